@@ -1,0 +1,135 @@
+//! Flying a solved extremal once more: the path for people, and the evidence.
+
+use numerics::dual::Dual;
+use numerics::ode::{DenseStep, Flow, Mode, Options, Termination, integrate_observed};
+use sail::trajectory::{Jump, Sample, Sampling, Trajectory};
+
+use super::extremal::{Extremal, attitude};
+use super::shooting::Unknowns;
+use super::solve::Problem;
+use crate::certificate::{Evidence, REFLY_TOLERANCE};
+
+/// A flown extremal. Canonical units (au).
+#[derive(Clone, Debug)]
+pub struct Flown {
+    /// Flight time.
+    pub time: f64,
+    /// The path.
+    pub trajectory: Trajectory,
+    /// What the flight proves.
+    pub evidence: Evidence,
+    /// Eccentricity of the orbit the craft ends on.
+    pub final_eccentricity: f64,
+}
+
+/// The extremal with two quadratures: angle swept, and velocity change by the sail.
+type Recorded = [f64; 8];
+
+struct Recorder(Extremal);
+
+fn augmented(y: &Recorded) -> [f64; 6] {
+    [y[0], y[1], y[2], y[3], y[4], y[5]]
+}
+
+impl Flow<f64, 8> for Recorder {
+    fn rates(&self, mode: Mode, y: &Recorded) -> Recorded {
+        let [dr, du, dv, dl_r, dl_u, dl_v] = self.0.rates(mode, &augmented(y));
+        [dr, du, dv, dl_r, dl_u, dl_v, y[2] / y[0], self.acceleration(y)]
+    }
+
+    fn events(&self) -> usize {
+        1
+    }
+
+    /// The transverse primer: where it changes sign on the sunward side the normal turns over.
+    fn event(&self, _: usize, y: &Recorded) -> f64 {
+        y[5]
+    }
+}
+
+impl Recorder {
+    fn acceleration(&self, y: &Recorded) -> f64 {
+        let (cos, _) = attitude(y[4], y[5]);
+        self.0.lightness / (y[0] * y[0]) * cos * cos
+    }
+
+    /// Signed cone angle and its rate; the mode says which side the normal is on where the primer passes through
+    /// the Sun line.
+    fn cone(&self, mode: Mode, y: &Recorded) -> (f64, f64) {
+        let rates = self.0.rates(mode, &augmented(y));
+        let seeded = |i: usize| Dual::<1> { v: y[i], d: [rates[i]] };
+        let (cos, sin) = attitude(seeded(4), seeded(5));
+        let cone = numerics::scalar::Scalar::atan2(sin, cos);
+        (if mode.is_set(0) { cone.v.abs() } else { -cone.v.abs() }, cone.d[0])
+    }
+
+    fn sample(&self, mode: Mode, time: f64, y: &Recorded) -> Sample {
+        let (cone, rate) = self.cone(mode, y);
+        Sample::coplanar(time, [y[0], y[1], y[2]], y[6], cone, self.acceleration(y), y[2] / y[0] + rate)
+    }
+}
+
+/// Heliocentric angle that the flight will sweep, roughly: it only decides how densely the path is sampled.
+///
+/// A slow spiral with the best constant cone angle sweeps |ln ratio| / (2 x 0.385 beta); a short flight no more than
+/// the faster circle does in that time.
+fn sweep_estimate(problem: &Problem, time: f64) -> f64 {
+    let spiral = problem.ratio().ln().abs() / (0.77 * problem.lightness) + std::f64::consts::TAU;
+    spiral.min(time * problem.ratio().min(1.0).powf(-1.5))
+}
+
+/// Flies `unknowns` (in units of the start radius) to the end.
+///
+/// `None` when the integration itself fails; a flight that misses its target is returned with that evidence.
+pub fn fly(problem: &Problem, unknowns: &Unknowns) -> Option<Flown> {
+    let recorder = Recorder(Extremal { lightness: problem.lightness });
+    let l = unknowns.costate;
+    let start = [1.0, 0.0, 1.0, l.x, l.y, l.z, 0.0, 0.0];
+    let first = recorder.0.hamiltonian(&augmented(&start));
+    let mut drift = 0.0f64;
+    let mut jumps = Vec::new();
+    let mut mode = Mode(u32::from(l.z > 0.0));
+    let sampling = Sampling::for_sweep(sweep_estimate(problem, unknowns.time));
+    let mut samples = vec![recorder.sample(mode, 0.0, &start)];
+    let options = Options { tolerance: REFLY_TOLERANCE, max_steps: 80_000 };
+    let mut observe = |step: &DenseStep<f64, 8>| {
+        let change = (recorder.0.hamiltonian(&augmented(&step.to)) / first - 1.0).abs();
+        if change > drift || change.is_nan() {
+            drift = change;
+        }
+        if step.mode != mode {
+            mode = step.mode;
+            if step.from[4] < 0.0 {
+                jumps.push(Jump { time: step.start, angle: std::f64::consts::PI });
+                let after = recorder.sample(mode, step.start, &step.from);
+                samples.push(Sample { turn_rate: f64::NAN, ..after });
+            }
+        }
+        for x in sampling.fractions(step.to[6] - step.from[6]) {
+            samples.push(recorder.sample(mode, step.start + x * step.length, &step.at(x)));
+        }
+    };
+    let outcome = integrate_observed(&recorder, &start, unknowns.time, &options, &mut observe);
+    if outcome.termination != Termination::Reached {
+        return None;
+    }
+    let [r, u, v, .., swept, delta_v] = outcome.state;
+    let ratio = problem.ratio();
+    let (length, speed) = (problem.start_radius, problem.start_radius.powf(-0.5));
+    let evidence = Evidence {
+        position_error: (r - ratio).abs() * length,
+        speed_error: u.hypot(v - ratio.powf(-0.5)) * speed,
+        target_distance: problem.target_radius,
+        target_speed: problem.target_radius.powf(-0.5),
+        gap: (problem.target_radius - problem.start_radius).abs(),
+        hamiltonian_drift: drift,
+        hamiltonian_at_arrival: recorder.0.hamiltonian(&augmented(&outcome.state)),
+    };
+    let (_, final_eccentricity) = sail::motion::polar::shape(r, u, v);
+    let trajectory = Trajectory { samples, jumps, swept, delta_v }.stretched(length);
+    Some(Flown { time: unknowns.time * problem.time_scale(), trajectory, evidence, final_eccentricity })
+}
+
+#[cfg(test)]
+#[path = "flight_tests.rs"]
+mod tests;

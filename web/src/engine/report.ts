@@ -1,0 +1,141 @@
+// The report as the core writes it; a test holds these types against real reports. Units are in the names.
+
+export type Status = "converged" | "flown" | "approximate" | "not_converged" | "unreachable";
+
+export interface Constants {
+  sun_gm_km3_s2: number;
+  au_km: number;
+  irradiance_w_m2: number;
+  pressure_n_m2: number;
+  sun_gravity_mm_s2: number;
+  g0_m_s2: number;
+}
+
+export interface End {
+  name: string;
+  semi_major_axis_au: number;
+  eccentricity: number;
+  inclination_deg: number;
+  node_deg: number;
+  arg_peri_deg: number;
+}
+
+export interface Craft {
+  ac_mm_s2: number;
+  lightness: number;
+  efficiency: number;
+  loading_g_m2: number | null;
+  area_m2: number | null;
+  side_m: number | null;
+  mass_kg: number | null;
+  delivered_kg: number | null;
+}
+
+export interface Proof {
+  position_error_km: number | null;
+  speed_error_m_s: number | null;
+  hamiltonian_drift: number | null;
+  extremals_found: number;
+  second_order: "passed" | "failed" | "not_tested";
+  method: string;
+}
+
+export interface Flight {
+  status: Status;
+  message: string | null;
+  time_d: number | null;
+  revolutions: number | null;
+  depart: string | null;
+  arrive: string | null;
+  vinf_used_km_s: number | null;
+  c3_km2_s2: number | null;
+  vinf_arrive_km_s: number | null;
+  sun_distance_min_au: number | null;
+  sun_distance_max_au: number | null;
+  film_temp_max_k: number | null;
+  turn_rate_max_deg_d: number | null;
+  jumps: { time_d: number; angle_deg: number }[];
+  sail_dv_km_s: number | null;
+  lead_angle_deg: number | null;
+  earth_range_max_au: number | null;
+  final_eccentricity: number | null;
+  estimate: number | null;
+  proof: Proof;
+  branches: { time_d: number; revolutions: number; best: boolean }[];
+  margin: { days_in_hand: number; mass_growth_pct: number | null; ac_in_hand_pct: number | null } | null;
+}
+
+export interface ImpulsiveWay {
+  time_d: number;
+  dv_depart_km_s: number;
+  dv_arrive_km_s: number;
+  dv_total_km_s: number;
+  propellant_fraction: number;
+  delivered_kg: number | null;
+  phases: string;
+}
+
+export interface Impulsive {
+  heliocentric: ImpulsiveWay;
+  same_start_same_end: ImpulsiveWay;
+  from_parking: ImpulsiveWay | null;
+  from_parking_note: string | null;
+  lead_angle_deg: number;
+  synodic_d: number | null;
+}
+
+export interface Program {
+  name: string;
+  version: string;
+  constants: Constants;
+}
+
+export interface Report {
+  program: Program;
+  link: string;
+  sentence: string;
+  ends: { from: End; to: End };
+  craft: Craft;
+  flight: Flight;
+  impulsive: Impulsive;
+  cautions: string[];
+}
+
+/** One published check as the core ran it. */
+export interface CheckRow {
+  name: string;
+  source: string;
+  mark: string;
+  unit: string;
+  expected: number;
+  found: number | null;
+  tolerance: number;
+  passed: boolean;
+}
+
+/** One key of the scenario link. */
+export interface KeyInfo {
+  key: string;
+  label: string;
+  unit: string;
+  range: string;
+  min: number | null;
+  max: number | null;
+  words: string[];
+  /** `none` where nothing stands for the key left out. */
+  default: string;
+  help: string;
+}
+
+/** One thing wrong with a scenario. */
+export interface LinkError {
+  key: string;
+  value: string;
+  rule: string;
+}
+
+export interface Example {
+  name: string;
+  link: string;
+  about: string;
+}

@@ -1,0 +1,107 @@
+// A figure on the page: a canvas drawn by the core, a layer above it for what moves, its words for those who
+// do not see it, and a redraw whenever size, look or flight change.
+import { h, oncePerFrame } from "./dom";
+import type { Client } from "./engine/client";
+import type { FigureName, FigurePanel, Figures } from "./engine/core";
+import type { State } from "./state";
+
+export interface View {
+  zoom: number;
+  pan_x_au: number;
+  pan_y_au: number;
+}
+
+export interface FigureParts {
+  name: FigureName;
+  /** Height in CSS pixels for a width. */
+  height: (width: number) => number;
+  view?: () => View;
+  /** Draws what moves, in CSS pixels, on a cleared layer. */
+  overlay: (context: CanvasRenderingContext2D, panels: readonly FigurePanel[]) => void;
+}
+
+export class Figure {
+  readonly frame = h("div", { class: "figure" });
+  panels: readonly FigurePanel[] = [];
+  readonly redraw = oncePerFrame(() => this.draw());
+  readonly redrawOverlay = oncePerFrame(() => this.drawOverlay());
+  private readonly base = h("canvas", { role: "img" });
+  private readonly layer = h("canvas", { "aria-hidden": "true", class: "layer" });
+  private readonly words = h("p", { class: "unseen" });
+  private readonly failed = h("p", { class: "alarm", hidden: true }, "This figure could not be drawn for this flight.");
+  private figures: Figures | undefined;
+
+  constructor(
+    private readonly state: State,
+    private readonly client: Client,
+    private readonly parts: FigureParts,
+  ) {
+    const id = `${parts.name}-words`;
+    this.words.id = id;
+    this.base.setAttribute("aria-labelledby", id);
+    this.frame.append(this.base, this.layer, this.words, this.failed);
+    state.shown.watch(() => this.renew());
+    state.theme.watch(this.redraw);
+    state.verdict.watch(this.redraw);
+    state.cursor_d.watch(this.redrawOverlay);
+    new ResizeObserver(this.redraw).observe(this.frame);
+    addEventListener("resize", this.redraw);
+  }
+
+  private renew(): void {
+    this.client.guard(() => this.figures?.free());
+    const shown = this.state.shown.get();
+    this.figures = shown ? this.client.figures(shown.solved) : undefined;
+    this.words.textContent = this.client.guard(() => this.figures?.describe(this.parts.name)) ?? "";
+    this.redraw();
+  }
+
+  private draw(): void {
+    const width = Math.floor(this.frame.clientWidth);
+    if (width === 0 || !this.figures) return;
+    const height = Math.round(this.parts.height(width));
+    for (const canvas of [this.base, this.layer]) {
+      canvas.style.width = `${width}px`;
+      canvas.style.height = `${height}px`;
+    }
+    // Lines sit on whole device pixels: at least two a CSS pixel keep them smooth.
+    const scale = Math.max(2, devicePixelRatio);
+    const options = {
+      width,
+      height,
+      scale,
+      theme: this.state.theme.get(),
+      stale: this.state.verdict.get().link === null,
+      ...(this.parts.view?.() ?? { zoom: 1, pan_x_au: 0, pan_y_au: 0 }),
+    };
+    const figures = this.figures;
+    const map = this.client.guard(() => figures.draw(this.base, this.parts.name, options));
+    this.failed.hidden = map !== undefined;
+    this.panels = map?.panels ?? [];
+    this.layer.width = Math.round(width * scale);
+    this.layer.height = Math.round(height * scale);
+    this.drawOverlay();
+  }
+
+  private drawOverlay(): void {
+    const context = this.layer.getContext("2d");
+    if (!context || this.panels.length === 0) return;
+    const scale = this.layer.width / Math.max(1, this.base.clientWidth);
+    context.setTransform(1, 0, 0, 1, 0, 0);
+    context.clearRect(0, 0, this.layer.width, this.layer.height);
+    context.setTransform(scale, 0, 0, scale, 0, 0);
+    this.parts.overlay(context, this.panels);
+  }
+}
+
+/** Place of a value in a panel, CSS pixels from the left and the top. */
+export function place(panel: FigurePanel, x: number, y: number): [number, number] {
+  const scaled = panel.y_log ? Math.log : (value: number) => value;
+  const down = (scaled(panel.y_max) - scaled(y)) / (scaled(panel.y_max) - scaled(panel.y_min));
+  return [panel.left + ((x - panel.x_min) / (panel.x_max - panel.x_min)) * panel.width, panel.top + down * panel.height];
+}
+
+/** A colour of the style sheet, by token. */
+export function token(name: string): string {
+  return getComputedStyle(document.documentElement).getPropertyValue(`--${name}`).trim();
+}
