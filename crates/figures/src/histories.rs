@@ -254,7 +254,7 @@ impl Plot<'_> {
         for (radius, end) in circle_radii(ends) {
             let y = self.px(0.0, radius).y;
             let line = [Point::new(left, y), Point::new(left + width, y)];
-            room.draw_line(&line, 1.0);
+            room.draw_line(&line, 0.05);
             self.segment(line[0], line[1], Stroke::solid(self.theme.edge, 1.0));
             names.push((y, end.name.clone()));
         }
@@ -265,7 +265,7 @@ impl Plot<'_> {
                 let x = left + 4.0 + half + (width - 8.0 - 2.0 * half) * share;
                 [Point::new(x, y - beside), Point::new(x, y + beside)]
             });
-            if let Some(text) = room.place(&name, style, spots, 0.5) {
+            if let Some(text) = room.place(&name, style, spots, 2.0) {
                 self.shapes.push(Shape::Text(text));
             }
         }

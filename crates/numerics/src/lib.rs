@@ -4,6 +4,7 @@
 //! Numbers here have no units and mean nothing physical: there are no planets, no sails and no files in this
 //! crate.
 
+pub mod arclength;
 pub mod continuation;
 pub mod dual;
 pub mod newton;

@@ -4,3 +4,4 @@
 
 pub mod certificate;
 pub mod coplanar;
+pub mod spatial;

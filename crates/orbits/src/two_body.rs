@@ -147,11 +147,11 @@ impl Conic {
                 low = chi;
             }
             let newton = chi - (time - target) / distance;
-            let next = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
-            if (next - chi).abs() <= f64::EPSILON * chi {
-                return forward * next;
+            // Before the bracket is asked: chi is one of its ends by now, and a settled step lands on it.
+            if (newton - chi).abs() <= f64::EPSILON * chi {
+                return forward * newton;
             }
-            chi = next;
+            chi = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
         }
         forward * chi
     }

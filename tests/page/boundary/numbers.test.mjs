@@ -8,10 +8,10 @@ const days = (link) => core.solve(link).report.flight.time_d;
 
 // Flight time 6.9924 canonical units at lightness number 0.17, r 1 to 1.5237: published, A. E. Bryson, Dynamic
 // Optimization (1999), fig. 4.14 and problems 4.5.21/4.7.21, after H. J. Kelley (1962), read as stored in the author's
-// companion scripts. One unit is 58.132441 d; the tolerance is that of the four decimals and the radius.
+// companion scripts; these hold a rounded end speed (0.8101), hence 3e-4 relative. One unit is 58.132441 d.
 test("the transfer that Bryson published takes as long here", () => {
   const canonical = days("ac_mm_s2=1.00811428&to=orbit&to_orbit=1.5237") / 58.132441;
-  assert.ok(Math.abs(canonical - 6.9924) < 3e-4, String(canonical));
+  assert.ok(Math.abs(canonical / 6.9924 - 1) < 3e-4, String(canonical));
 });
 
 // Computed: indirect and direct methods (CasADi with IPOPT, SciPy) agree to 1e-4 relative.

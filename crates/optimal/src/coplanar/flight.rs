@@ -1,7 +1,7 @@
 //! Flying a solved extremal once more: the path for people, and the evidence.
 
 use numerics::dual::Dual;
-use numerics::ode::{DenseStep, Flow, Mode, Options, Termination, integrate_observed};
+use numerics::ode::{DenseStep, Flow, Mode, Options, Termination, integrate, integrate_observed};
 use sail::trajectory::{Jump, Sample, Sampling, Trajectory};
 
 use super::extremal::{Extremal, attitude};
@@ -76,6 +76,15 @@ impl Recorder {
 fn sweep_estimate(problem: &Problem, time: f64) -> f64 {
     let spiral = problem.ratio().ln().abs() / (0.77 * problem.lightness) + std::f64::consts::TAU;
     spiral.min(time * problem.ratio().min(1.0).powf(-1.5))
+}
+
+/// Heliocentric angle swept by a solved flight, to a few digits; `None` when it cannot be flown.
+pub fn swept_angle(problem: &Problem, unknowns: &Unknowns) -> Option<f64> {
+    let l = unknowns.costate;
+    let start = [1.0, 0.0, 1.0, l.x, l.y, l.z, 0.0, 0.0];
+    let options = Options { tolerance: 1e-9, max_steps: 80_000 };
+    let outcome = integrate(&Recorder(Extremal { lightness: problem.lightness }), &start, unknowns.time, &options);
+    (outcome.termination == Termination::Reached).then_some(outcome.state[6])
 }
 
 /// Flies `unknowns` (in units of the start radius) to the end.

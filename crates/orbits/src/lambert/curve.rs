@@ -14,10 +14,13 @@ pub(super) struct Curve {
 }
 
 /// Closer to the parabola (in 1 - x^2) the series of Battin replaces the closed form, which loses digits there.
-const SERIES_BELOW: f64 = 0.1;
+const SERIES_BELOW: f64 = 0.3;
 
-/// Closer to the parabola the derivatives lose too many digits: a plain secant slope serves instead.
+/// Closer to the parabola the derivatives lose too many digits: the slope at the parabola serves instead.
 const SLOPE_BELOW: f64 = 1e-3;
+
+/// Relative error that rounding leaves in a flight time: no step can do better.
+const ROUNDING: f64 = 16.0 * f64::EPSILON;
 
 /// Steps after which a root stops: bisection alone needs fewer.
 const STEPS_MAX: u32 = 80;
@@ -67,7 +70,7 @@ impl Curve {
         let eta = self.eta(x, y);
         let e = (1.0 - x) * (1.0 + x);
         let turns = f64::from(self.revolutions) * PI;
-        if e.abs() < SERIES_BELOW {
+        if x > 0.0 && e.abs() < SERIES_BELOW {
             let s = 0.5 * (self.one_less_lambda() - x * eta);
             let single = 0.5 * (eta.powi(3) * (4.0 / 3.0) * hypergeometric(s) + 4.0 * self.lambda * eta);
             return if self.revolutions == 0 { single } else { single + turns / (e * e.sqrt()) };
@@ -81,7 +84,7 @@ impl Curve {
     /// First three derivatives of the flight time (Izzo eq. 22).
     fn derivatives(&self, x: f64, time: f64) -> [f64; 3] {
         let e = (1.0 - x) * (1.0 + x);
-        if self.revolutions == 0 && e.abs() < SLOPE_BELOW {
+        if self.revolutions == 0 && x > 0.0 && e.abs() < SLOPE_BELOW {
             return [-0.4 * self.one_less_lambda5(), 0.0, 0.0];
         }
         let y = self.y(x);
@@ -139,12 +142,10 @@ impl Curve {
                 high = x;
             }
             let halley = x - 2.0 * first * second / (2.0 * second * second - first * third);
-            let next = if halley > low && halley < high { halley } else { 0.5 * (low + high) };
-            let is_settled = (next - x).abs() <= 4.0 * f64::EPSILON;
-            x = next;
-            if is_settled {
+            if (halley - x).abs() <= 4.0 * f64::EPSILON {
                 break;
             }
+            x = if halley > low && halley < high { halley } else { 0.5 * (low + high) };
         }
         x
     }
@@ -162,7 +163,7 @@ impl Curve {
         for step in 1..=STEPS_MAX {
             let found = self.time(x);
             let excess = found - time;
-            if excess.abs() <= f64::EPSILON * time {
+            if excess.abs() <= ROUNDING * time {
                 return (x, step);
             }
             if falling * excess > 0.0 {
@@ -174,17 +175,17 @@ impl Curve {
             let slope2 = first * first;
             let householder = x - excess * (slope2 - 0.5 * excess * second)
                 / (first * (slope2 - excess * second) + third * excess * excess / 6.0);
-            let next = inside(householder, low, high);
-            if (next - x).abs() <= 2.0 * f64::EPSILON * (1.0 + x.abs()) {
-                return (next, step);
+            // Before the bracket is asked: x is one of its ends by now, and a settled step lands on it.
+            if (householder - x).abs() <= 2.0 * f64::EPSILON * (1.0 + x.abs()) {
+                return (householder, step);
             }
-            x = next;
+            x = inside(householder, low, high);
         }
         (x, STEPS_MAX)
     }
 }
 
-/// Gauss's hypergeometric function 2F1(3, 1; 5/2; z) by its series; |z| is below 0.3 where it is used.
+/// Gauss's hypergeometric function 2F1(3, 1; 5/2; z) by its series; |z| is at most 0.3 where it is used.
 fn hypergeometric(z: f64) -> f64 {
     let (mut sum, mut term) = (1.0, 1.0);
     let mut k = 0.0;

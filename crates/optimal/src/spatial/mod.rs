@@ -1,0 +1,8 @@
+//! Minimum time between orbits in space: Cartesian states and costates, canonical units (au).
+
+pub mod curves;
+pub mod ends;
+pub mod extremal;
+pub mod launch;
+pub mod rendezvous;
+pub mod terminal;
