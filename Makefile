@@ -35,10 +35,10 @@ test-native: ## the Rust tests
 test-page: page ## types, page units, and the core's boundary in WASM under Node
 	cargo build --locked --quiet --profile quick --package cli
 	cd web && npx --no-install tsc --project .
-	SUNREACH=$(CLI) node --test tests/page/unit/ tests/page/boundary/
+	SUNREACH=$(CLI) node --test tests/page/unit/*.test.mjs tests/page/boundary/*.test.mjs
 
 test-browser: page browsers ## the page in Chromium and Firefox, from the file and served
-	node --test --test-concurrency=1 tests/page/browser/
+	node --test --test-concurrency=1 tests/page/browser/*.test.mjs
 
 bench: page browsers ## criterion benchmarks, then the page's own measurements
 	cargo bench --locked --workspace

@@ -83,7 +83,7 @@ export const CONTROLS: readonly Control[] = [
   { key: "park_km", group: "baseline" },
   { key: "capture_km", group: "baseline" },
   { key: "stage_dry", group: "baseline" },
-  { key: "title", group: "about" },
+  { key: "title", group: "about", range: "Up to 80 characters", help: "Shown above the answer and carried by the link." },
 ];
 
 /** Keys that have a field of their own, asked for or not. */

@@ -25,7 +25,8 @@ const WORKERS = 2;
 
 async function open(): Promise<void> {
   const module = await openModule();
-  const client = new Client(module, new Pool(startWorker, module, WORKERS), (link, outcome) => take(link, outcome));
+  const pool = new Pool(startWorker, module, WORKERS);
+  const client = new Client(module, pool, (link, outcome) => take(link, outcome));
   const dark = matchMedia("(prefers-color-scheme: dark)");
   const state = new State(
     Object.fromEntries(client.check("").entries),
@@ -60,7 +61,7 @@ async function open(): Promise<void> {
     state.verdict.set({ link, errors });
     return link;
   };
-  // The workers are still starting: the first flight is solved here.
+  // The first flight is solved here, before any worker could be there to do it.
   const first = verdictNow();
   if (first !== null) take(first, client.askHere(first));
 
@@ -82,6 +83,8 @@ async function open(): Promise<void> {
   started = true;
   watchFragment(openLink);
   part("results").dataset.ready = "true";
+  // Starting workers takes the processor that the first picture needs.
+  requestAnimationFrame(() => setTimeout(() => pool.warm()));
 }
 
 open().catch((error: unknown) => {

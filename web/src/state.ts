@@ -58,7 +58,14 @@ export class State {
 
   edit(key: string, text: string): void {
     const { texts, craftBy } = this.scenario.get();
-    if (texts[key] !== text) this.scenario.set({ texts: { ...texts, [key]: text }, craftBy });
+    if (texts[key] === text) return;
+    const next = { ...texts, [key]: text };
+    // A circle that has no radius yet starts from the orbit it takes the place of.
+    if ((key === "from" || key === "to") && text === "orbit" && !texts[`${key}_orbit`]) {
+      const radius_au = this.shown.get()?.solved.report.ends[key].semi_major_axis_au;
+      if (radius_au !== undefined) next[`${key}_orbit`] = String(Number(radius_au.toPrecision(6)));
+    }
+    this.scenario.set({ texts: next, craftBy });
   }
 
   /** Gives the craft another way; a field that is still empty starts from the craft shown. */

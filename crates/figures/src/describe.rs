@@ -4,6 +4,7 @@ use scenario::report::{Columns, End, Report};
 
 use crate::axis::{extent, number, significant};
 use crate::notes;
+use crate::track::is_spatial;
 use crate::{FigureError, NAMES};
 
 /// A change smaller than this share of a history's range is not told.
@@ -46,10 +47,11 @@ fn orbit(report: &Report, columns: &Columns) -> Vec<String> {
         ));
         let mut cones = columns.cone_deg.iter().copied().filter(|cone| cone.is_finite());
         if let (Some(first), Some(last)) = (cones.clone().next(), cones.next_back()) {
+            let spatial = is_spatial(columns);
             out.push(format!(
                 "Its normal stands {} at departure and {} at arrival.",
-                lean_words(first),
-                lean_words(last)
+                lean_words(first, spatial),
+                lean_words(last, spatial)
             ));
         }
     }
@@ -87,10 +89,13 @@ fn orbit_words(end: &End) -> String {
     }
 }
 
-fn lean_words(cone_deg: f64) -> String {
+/// Spatial cone angles carry no sign: their direction is the clock angle's to tell.
+fn lean_words(cone_deg: f64, spatial: bool) -> String {
     let angle = number(cone_deg.abs(), 0);
     if angle == "0" {
         "on the Sun line".to_owned()
+    } else if spatial {
+        format!("{angle}° off the Sun line")
     } else if cone_deg > 0.0 {
         format!("{angle}° forward of the Sun line")
     } else {

@@ -3,7 +3,7 @@
 use scenario::report::{Columns, End, Report};
 
 use crate::axis::{Steps, Tick, extent, linear_ticks, log_ticks, padded};
-use crate::geometry::{Rect, clip};
+use crate::geometry::{Rect, clip, reduce};
 use crate::labels::{Room, Style};
 use crate::metrics::{text_height, text_width};
 use crate::notes;
@@ -292,7 +292,7 @@ impl Plot<'_> {
         }
         runs.push(run);
         for run in runs {
-            for piece in clip(&extremes_per_pixel(&run), &self.frame.grown(1.0)) {
+            for piece in clip(&reduce(&extremes_per_pixel(&run), 0.1), &self.frame.grown(1.0)) {
                 self.shapes.push(Shape::Polyline { points: piece, stroke: solid });
             }
         }

@@ -61,14 +61,13 @@ pub(crate) fn set(shapes: &mut Vec<Shape>, sentences: &[String], area: Rect, the
         }
         for content in wrap(&printable(sentence), SIZE, area.width, room) {
             let at = Point::new(area.left, area.top + (used as f64 + 0.5) * height);
-            let weight = Weight::Normal;
             shapes.push(Shape::Text(Text {
                 at,
                 content,
                 anchor: Anchor::Start,
                 size: SIZE,
                 color: theme.alarm,
-                weight,
+                weight: Weight::Normal,
             }));
             used += 1;
         }

@@ -108,7 +108,7 @@ mod tests {
 
     #[test]
     fn julian_dates_of_known_days() {
-        // Published: J. Meeus, Astronomical Algorithms, chapter 7 (from memory): 1957-10-04.81 is JD 2436116.31,
+        // From memory (high confidence): J. Meeus, Astronomical Algorithms, chapter 7: 1957-10-04.81 is JD 2436116.31,
         // 1987-01-27.0 is 2446822.5, 1988-06-19.5 is 2447332.0, 1900-01-01.0 is 2415020.5, 1600-01-01.0 is
         // 2305447.5.
         let jd = |y, m, d| jd_tdb(start_of_day(y, m, d).unwrap());

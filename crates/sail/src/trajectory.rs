@@ -1,5 +1,7 @@
 //! A flown trajectory: samples dense enough to draw, and what is extreme along it.
 
+use nalgebra::Vector3;
+
 /// One moment of a flight. Canonical units, radians.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Sample {
@@ -122,6 +124,36 @@ impl Sample {
             clock,
             acceleration,
             turn_rate: normal_rate.abs(),
+        }
+    }
+}
+
+impl Sample {
+    /// A sample in space from position, velocity and the unit `normal` of the sail.
+    ///
+    /// The clock angle counts from the orbital transverse direction towards the orbit normal.
+    pub fn spatial(
+        time: f64,
+        position: Vector3<f64>,
+        velocity: Vector3<f64>,
+        normal: Vector3<f64>,
+        acceleration: f64,
+        turn_rate: f64,
+    ) -> Sample {
+        let outward = position.normalize();
+        let pole = position.cross(&velocity).normalize();
+        let forward = pole.cross(&outward);
+        let (ahead, north) = (normal.dot(&forward), normal.dot(&pole));
+        let cone = ahead.hypot(north).atan2(normal.dot(&outward));
+        let clock = if cone < CLOCK_UNDEFINED { f64::NAN } else { north.atan2(ahead) };
+        Sample {
+            time,
+            position: position.into(),
+            velocity: velocity.into(),
+            cone,
+            clock,
+            acceleration,
+            turn_rate,
         }
     }
 }

@@ -256,7 +256,7 @@ fn impulsive(rows: &mut Rows) {
         of(mars, &|h| h.arrive_km_s),
     );
     let geo =
-        Circles { gm_km3_s2: 398_600.4418, from_km: 6378.137 + 191.344_11, to_km: 6378.137 + 35_781.348_57 };
+        Circles { gm_km3_s2: 398_600.441_8, from_km: 6378.137 + 191.344_11, to_km: 6378.137 + 35_781.348_57 };
     let source = (VALLADO, MEMORY);
     rows.add(
         "Hohmann to 35 781 km altitude: total",

@@ -1,6 +1,6 @@
 //! Scenarios that can be written but are not solved: each one a line of a table, with the way out.
 //!
-//! Two lists. [`NOT_YET`] is what this version does not solve: a line goes when its solver comes. [`NEVER`] is
+//! Two lists. `NOT_YET` is what this version does not solve: a line goes when its solver comes. `NEVER` is
 //! what contradicts itself or hides a problem of another kind, and stays.
 //!
 //! Identical ends are not refused: the answer is a flight of zero days.

@@ -246,6 +246,8 @@ for (const name of ["chromium", "firefox"])
           return { index: all.indexOf(element), outlined: outlineStyle !== "none", tag: element.outerHTML.slice(0, 80) };
         });
         if (!at) continue;
+        // Round once: coming back from the browser's own bars a focus need not show again.
+        if (reached.has(at.index)) break;
         assert.ok(at.outlined, at.tag);
         reached.add(at.index);
       }

@@ -33,7 +33,10 @@ const fakeCore = () => ({});
 test("while one question runs only the newest waits", async () => {
   const { started, start } = workers();
   const answers = [];
-  const client = new Client({}, new Pool(start, {}, 2), (link) => answers.push(link), fakeCore);
+  const pool = new Pool(start, {}, 2);
+  const client = new Client({}, pool, (link) => answers.push(link), fakeCore);
+  assert.equal(started.length, 0);
+  pool.warm();
   for (const link of ["a", "b", "c", "d"]) client.ask(link);
   assert.deepEqual(started.map((worker) => worker.asked.length), [1, 0]);
   started[0].reply(solved("a"));

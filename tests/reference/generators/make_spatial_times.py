@@ -45,15 +45,50 @@ def local_solutions(found):
     return groups
 
 
-def spatial_row(problem, candidates, elements_count, limit_s):
-    """Solve every guess, refine the fastest, shoot from it. Returns (row, refined flight)."""
-    first = direct.Transcription(problem, np.linspace(0, 1, elements_count + 1), limit_s)
+def search_orbit(problem):
+    """Departure held in windows all round the orbit, coplanar flights of three accelerations as guesses; then freed.
+
+    Returns (free local optima by name, guesses tried, map of the windows).
+    """
+    found, tried, windows = {}, 0, []
+    for factor, count in ((1.0, 12), (0.75, 6), (1.4, 6)):
+        plane = plane_direct.best_flight(factor * problem.beta, TARGETS_AU[problem.target])
+        mesh = np.linspace(0, 1, max(30, math.ceil(plane["angle"] / (2 * math.pi) * 16)) + 1)
+        program = direct.Transcription(problem, mesh, 6.0)
+        for name, guess in guesses.orbit_guesses(problem, plane, count, 1.2 * math.pi / count):
+            tried += 1
+            held = program.solve(guess)
+            if held is None:
+                continue
+            start = held["states"][:, 0]
+            windows.append(
+                {
+                    "guess": f"{factor} x acceleration, {name}",
+                    "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
+                    "time_d": round(held["t_f"] * TIME_UNIT_D, 3),
+                    "at_window_edge": held["at_window_edge"],
+                }
+            )
+            freed = held if not held["at_window_edge"] else program.solve(direct.as_guess(held))
+            if freed is not None:
+                found[windows[-1]["guess"]] = freed
+    return found, tried, windows
+
+
+def search_rendezvous(problem, t_plane):
+    """Local optima by name from plain curves to many arrival dates, and the number of guesses tried."""
+    program = direct.Transcription(problem, np.linspace(0, 1, 31), 3.0)
     found, tried = {}, 0
-    for name, guess in candidates:
+    for name, guess in guesses.rendezvous_guesses(problem, t_plane):
         tried += 1
-        flight = first.solve(guess)
+        flight = program.solve(guess)
         if flight is not None:
             found[name] = flight
+    return found, tried
+
+
+def spatial_row(problem, found, tried):
+    """Refine the fastest of the local optima, shoot from it, and say it as a table row."""
     for name in sorted(found, key=lambda k: found[k]["t_f"]):
         flight = direct.refine(problem, found[name])
         if flight is not None:
@@ -96,7 +131,7 @@ def spatial_row(problem, candidates, elements_count, limit_s):
         "guesses": {"tried": tried, "converged": len(found), "used": name},
         "local_optima": local_solutions(found),
     }
-    return row, flight
+    return row
 
 
 def excess_row(ac, vinf_km_s):
@@ -158,16 +193,15 @@ def main():
     table = Table()
     for ac, vinf in EXCESS_CASES:
         table.add(excess_row(ac, vinf))
-    planes = {}
     for target, ac in ORBIT_CASES:
-        beta = ac / SUN_GRAVITY_1AU_MM_S2
-        plane = planes[target, ac] = plane_direct.best_flight(beta, TARGETS_AU[target])
-        problem = direct.Problem(target, beta)
-        count = max(30, math.ceil(plane["angle"] / (2 * math.pi) * 20))
-        table.add(spatial_row(problem, guesses.orbit_guesses(problem, plane), count, 15.0)[0])
+        problem = direct.Problem(target, ac / SUN_GRAVITY_1AU_MM_S2)
+        found, tried, windows = search_orbit(problem)
+        row = spatial_row(problem, found, tried)
+        row["departure_windows"] = windows
+        table.add(row)
     beta = 1.0 / SUN_GRAVITY_1AU_MM_S2
     for target in ("mars", "venus"):
-        t_plane = planes[target, 1.0]["t_f"]
+        t_plane = plane_direct.best_flight(beta, TARGETS_AU[target])["t_f"]
         period = elements.synodic_period_d("earth", target)
         problems = []
         for k in range(6):
@@ -177,7 +211,7 @@ def main():
             problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_km_s=2.0))
             problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_arrive_km_s=1.0))
         for problem in problems:
-            table.add(spatial_row(problem, guesses.rendezvous_guesses(problem, t_plane), 30, 4.0)[0])
+            table.add(spatial_row(problem, *search_rendezvous(problem, t_plane)))
 
 
 if __name__ == "__main__":

@@ -118,7 +118,13 @@ class Transcription:
         self.lower, self.upper = lower + [-10.0] * free, upper + [10.0] * free
 
     def solve(self, guess):
-        """guess: dict with t_f, anomaly (2), leave, meet and path(fractions) -> 9 rows. Returns a dict or None."""
+        """One local solve; None when IPOPT does not report success.
+
+        guess: dict with t_f, anomaly (2), leave, meet, path(fractions) -> 9 rows, and window: the departure anomaly may
+        move by this much [rad] only (left out: anywhere).
+        """
+        reach = guess.get("window", 1e3)
+        self.lower[1], self.upper[1] = guess["anomaly"][0] - reach, guess["anomaly"][0] + reach
         at_inner = guess["path"](self.s_inner)
         z0 = np.concatenate(
             [
@@ -154,6 +160,7 @@ class Transcription:
         return {
             "t_f": float(z[0]),
             "anomaly": z[1:3],
+            "at_window_edge": bool(abs(z[1] - guess["anomaly"][0]) > reach - 1e-6),
             "leave": z[3:6],
             "meet": z[6:9],
             # Multiplier of the start condition: the first costate scaled to a Hamiltonian of +1 (seed of a shooting).

@@ -60,24 +60,22 @@ def lifted(flight, longitude):
     return path, float(theta[-1])
 
 
-def orbit_guesses(problem, plane, longitudes=12):
-    """Departure points all round the orbit, each with a coplanar flight (`plane`) and with a plain, longer curve."""
-    a, e, inclination, _, arg, node = elements.elements_at("earth", 0.0)
-    b = elements.elements_at(problem.target, 0.0)
+def orbit_guesses(problem, plane, longitudes, window):
+    """A coplanar flight (`plane`) laid from points all round the orbit, departure held within `window` [rad] of each."""
+    _, _, _, _, arg, node = elements.elements_at("earth", 0.0)
+    _, _, _, _, arg_target, node_target = elements.elements_at(problem.target, 0.0)
     for k in range(longitudes):
         longitude = 2 * math.pi * k / longitudes
-        anomaly = longitude - arg - node
         path, arrival = lifted(plane, longitude)
-        both = np.array([anomaly, arrival - b[4] - b[5]])
-        yield f"coplanar flight from {math.degrees(longitude):.0f} deg", {"t_f": plane["t_f"], "anomaly": both, "path": path}
-        if k % 3 == 0:
-            t_f = 1.3 * plane["t_f"]
-            first = np.array([float(c) for c in elements.state_on_ellipse(a, e, inclination, arg, node, anomaly)[0]])
-            turn = natural_turn(first, np.array([b[0], 0.0, 0.0]), 0.0, t_f)
-            both = np.array([anomaly, longitude + turn - b[4] - b[5]])
-            last = [float(c) for c in elements.state_on_ellipse(b[0], b[1], b[2], b[4], b[5], both[1])[0]]
-            path = curve(first, np.array(last), turn, 0.0)
-            yield f"curve from {math.degrees(longitude):.0f} deg", {"t_f": t_f, "anomaly": both, "path": path}
+        yield (
+            f"from {math.degrees(longitude):.0f} deg",
+            {
+                "t_f": plane["t_f"],
+                "anomaly": np.array([longitude - arg - node, arrival - arg_target - node_target]),
+                "path": path,
+                "window": window,
+            },
+        )
 
 
 def rendezvous_guesses(problem, t_plane, stretches=(0.8, 1.0, 1.25, 1.5, 1.8, 2.2, 2.7), bulges=(0.0, 0.25, -0.2)):

@@ -21,19 +21,23 @@ interface Seat {
 }
 
 export class Pool {
-  private readonly seats: Seat[];
+  private seats: Seat[] = [];
   private lastId = 0;
 
   constructor(
     private readonly start: () => WorkerLike,
     private readonly module: WebAssembly.Module,
-    size: number,
-  ) {
-    this.seats = Array.from({ length: size }, () => this.open());
+    private readonly size: number,
+  ) {}
+
+  /** Starts the workers, if that has not happened yet. */
+  warm(): void {
+    if (this.seats.length === 0) this.seats = Array.from({ length: this.size }, () => this.open());
   }
 
   /** Puts a question to an idle worker; undefined when all are busy. */
   run(question: Question): Job | undefined {
+    this.warm();
     const seat = this.seats.find((seat) => seat.settle === null);
     if (!seat) return undefined;
     const id = ++this.lastId;

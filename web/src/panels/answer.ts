@@ -47,8 +47,10 @@ export function mountAnswer({ state, client }: Page): void {
 function proofLine(report: Report): (Node | string)[] {
   const { status, proof } = report.flight;
   const badge = h("span", { class: status === "converged" || status === "flown" ? "badge" : "badge bad" }, STANDING[status]);
+  // A flight that aims at no optimum ends beside the target; that is a distance, not an error.
+  const miss = status === "flown" ? "ends beside the target's orbit by" : "re-flown to within";
   const parts = [
-    proof.position_error_km !== null && `re-flown to within ${significant(proof.position_error_km, 2)} km`,
+    proof.position_error_km !== null && `${miss} ${significant(proof.position_error_km, 2)} km`,
     proof.speed_error_m_s !== null && `${significant(proof.speed_error_m_s, 2)} m/s`,
     proof.hamiltonian_drift !== null && `Hamiltonian constant to ${significant(proof.hamiltonian_drift, 2)}`,
     status !== "flown" && (proof.extremals_found === 1 ? "one extremal found" : `best of ${proof.extremals_found} extremals found`),
@@ -58,20 +60,24 @@ function proofLine(report: Report): (Node | string)[] {
 
 function remarks(report: Report): Node[] {
   const { flight, cautions } = report;
-  const margin = flight.margin;
   return [
     flight.message !== null && h("p", { class: flight.status === "flown" || flight.status === "converged" ? "note" : "alarm" }, flight.message),
     flight.time_d === null && flight.estimate !== null && h("p", { class: "note" }, `Estimate only, not a result: ${fixed(flight.estimate, 0)} days.`),
-    margin &&
-      h(
-        "p",
-        { class: margin.days_in_hand < 0 ? "alarm" : "note" },
-        margin.days_in_hand < 0
-          ? `Misses the deadline by ${fixed(-margin.days_in_hand, 1)} days.`
-          : `Meets the deadline with ${fixed(margin.days_in_hand, 1)} days in hand.`,
-        margin.mass_growth_pct !== null && ` Mass may grow by ${fixed(margin.mass_growth_pct, 1)} %.`,
-        margin.ac_in_hand_pct !== null && ` Acceleration in hand: ${fixed(margin.ac_in_hand_pct, 1)} %.`,
-      ),
+    flight.margin && h("p", { class: flight.margin.days_in_hand < 0 ? "alarm" : "note" }, deadline(flight.margin)),
     cautions.length > 0 && h("ul", { class: "cautions" }, ...cautions.map((text) => h("li", {}, text))),
   ].filter((node): node is HTMLParagraphElement | HTMLUListElement => node instanceof Node);
+}
+
+/** The margin in words; negative margins say what it would take. */
+function deadline({ days_in_hand, mass_growth_pct, ac_in_hand_pct }: NonNullable<Flight["margin"]>): string {
+  const late = days_in_hand < 0;
+  const percent = (value: number | null, words: string) => value !== null && `${fixed(Math.abs(value), 1)} % ${words}`;
+  const ways = [
+    percent(mass_growth_pct, late ? "less mass" : "more mass"),
+    percent(ac_in_hand_pct, late ? "more acceleration" : "less acceleration"),
+  ].filter(Boolean);
+  const days = `${fixed(Math.abs(days_in_hand), 1)} days`;
+  const fact = late ? `Misses the deadline by ${days}.` : `Meets the deadline with ${days} in hand.`;
+  if (ways.length === 0) return fact;
+  return `${fact} ${late ? "It would be met with" : "It would still be met with"} ${ways.join(" or ")}.`;
 }

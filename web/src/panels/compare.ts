@@ -18,7 +18,7 @@ export function mountCompare({ state }: Page): void {
 function ways(impulsive: Impulsive): [string, ImpulsiveWay][] {
   const all: [string, ImpulsiveWay | null][] = [
     ["same start, same end", impulsive.same_start_same_end],
-    ["heliocentric", impulsive.heliocentric],
+    ["helio\u00adcentric", impulsive.heliocentric],
     ["from parking orbit", impulsive.from_parking],
   ];
   return all.filter((pair): pair is [string, ImpulsiveWay] => pair[1] !== null);
@@ -44,13 +44,14 @@ function lines(report: Report): HTMLElement {
     row("Revolutions", fixed(flight.revolutions, 3), ...same("0.500")),
     row("Leaves, to match the orbit", "any day", ...same("any day")),
     row("Leaves, to meet the body", synodic, ...same(synodic)),
-    row("Needs", "sunlight, turning", ...same("engine, propellant")),
+    row("Needs", "sunlight", ...same("engine")),
   ];
   return table("Sail beside impulsive", ["", "sail", ...columns.map(([name]) => name)], rows, "compare");
 }
 
 function covered(report: Report): HTMLElement {
-  const { impulsive, craft } = report;
+  const { impulsive, craft, flight } = report;
+  const end = flight.status === "flown" ? "until the semi-major axis, or at a constant cone angle the distance, is the target's" : "until the target orbit is matched";
   const term = (name: string, text: string, side: string) => h("div", {}, h("dt", { class: side }, name), h("dd", {}, text));
   return h(
     "div",
@@ -60,7 +61,7 @@ function covered(report: Report): HTMLElement {
       {},
       term(
         "sail",
-        "From outside the start's gravity, with no excess speed, until the target orbit is matched; no capture. Escape from the planet is neither counted nor free. Its Δv is the time integral of the sail's acceleration: sunlight, not propellant.",
+        `From outside the start's gravity, with no excess speed, ${end}; no capture. Escape from the planet is neither counted nor free. Its Δv is the time integral of the sail's acceleration: sunlight, not propellant.`,
         "of-sail",
       ),
       ...ways(impulsive).map(([name, way]) => term(name, way.phases, "of-impulse")),

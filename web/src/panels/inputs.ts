@@ -151,7 +151,7 @@ function derived(page: Page): HTMLElement {
     const { craft } = shown.solved.report;
     const show = (value: number | null, digits: number) => (value === null ? "" : String(Number(value.toPrecision(digits))));
     list.textContent = [
-      `a_c ${show(craft.ac_mm_s2, 4)} mm/s²`,
+      `acceleration ${show(craft.ac_mm_s2, 4)} mm/s²`,
       `lightness number ${show(craft.lightness, 4)}`,
       craft.loading_g_m2 !== null && `loading ${show(craft.loading_g_m2, 4)} g/m²`,
       craft.side_m !== null && `side ${show(craft.side_m, 4)} m`,

@@ -32,11 +32,13 @@ export function mountOrbit({ state, client }: Page): void {
       context.rect(panel.left, panel.top, panel.width, panel.height);
       context.clip();
       context.lineWidth = 1;
-      context.strokeStyle = token("muted");
+      context.strokeStyle = token("edge");
+      context.globalAlpha = 0.6;
       context.beginPath();
       context.moveTo(sunLeft, sunTop);
       context.lineTo(left, top);
       context.stroke();
+      context.globalAlpha = 1;
       const cone = shown.histories.at("cone_deg", day);
       if (Number.isFinite(cone)) drawSail(context, left, top, Math.atan2(y, x) + (cone * Math.PI) / 180);
       context.fillStyle = token("sail");

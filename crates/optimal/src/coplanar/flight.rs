@@ -83,7 +83,8 @@ pub fn swept_angle(problem: &Problem, unknowns: &Unknowns) -> Option<f64> {
     let l = unknowns.costate;
     let start = [1.0, 0.0, 1.0, l.x, l.y, l.z, 0.0, 0.0];
     let options = Options { tolerance: 1e-9, max_steps: 80_000 };
-    let outcome = integrate(&Recorder(Extremal { lightness: problem.lightness }), &start, unknowns.time, &options);
+    let outcome =
+        integrate(&Recorder(Extremal { lightness: problem.lightness }), &start, unknowns.time, &options);
     (outcome.termination == Termination::Reached).then_some(outcome.state[6])
 }
 

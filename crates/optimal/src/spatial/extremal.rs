@@ -103,12 +103,7 @@ mod tests {
     /// The Hamiltonian from its definition, with the force as a vector.
     fn hamiltonian<T: Scalar>(lightness: f64, y: [T; 12]) -> T {
         let dot = |a: [T; 3], b: [T; 3]| a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
-        let (r, v, l, p) = (
-            [y[0], y[1], y[2]],
-            [y[3], y[4], y[5]],
-            [y[6], y[7], y[8]],
-            [y[9], y[10], y[11]],
-        );
+        let (r, v, l, p) = ([y[0], y[1], y[2]], [y[3], y[4], y[5]], [y[6], y[7], y[8]], [y[9], y[10], y[11]]);
         let distance = dot(r, r).sqrt();
         let up = r.map(|x| x / distance);
         let radial = dot(p, up);

@@ -4,5 +4,7 @@ pub mod curves;
 pub mod ends;
 pub mod extremal;
 pub mod launch;
+pub mod polish;
+pub mod prove;
 pub mod rendezvous;
 pub mod terminal;

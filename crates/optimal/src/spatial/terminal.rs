@@ -27,7 +27,8 @@ fn tangents(axis: &Vector6<f64>) -> SMatrix<f64, 6, 5> {
     let sign = if axis[0] < 0.0 { -1.0 } else { 1.0 };
     let mut mirror = *axis;
     mirror[0] += sign;
-    let reflection = SMatrix::<f64, 6, 6>::identity() - mirror * mirror.transpose() * (2.0 / mirror.norm_squared());
+    let reflection =
+        SMatrix::<f64, 6, 6>::identity() - mirror * mirror.transpose() * (2.0 / mirror.norm_squared());
     reflection.fixed_columns::<5>(1).into_owned()
 }
 

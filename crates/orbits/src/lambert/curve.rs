@@ -219,9 +219,8 @@ mod tests {
     }
 
     #[test]
-    fn hypergeometric_series_is_the_closed_form() {
-        // z = sin^2 u: 2F1(3, 1; 5/2; z) = 3 (2u (1 - ...)) has no short form to recall; the differential relation
-        // of the flight time does the work: series and closed form must join where one replaces the other.
+    fn series_and_closed_form_join() {
+        // Two independent expressions of one time; the step over 2e-13 in x itself is a few times that.
         for lambda in [-0.99, -0.5, 0.0, 0.5, 0.99] {
             for sign in [-1.0, 1.0] {
                 let edge = f64::sqrt(1.0 + sign * SERIES_BELOW);
@@ -236,9 +235,9 @@ mod tests {
     proptest! {
         #[test]
         fn derivatives_are_those_of_the_flight_time(
-            lambda in -0.95f64..0.95, x in -0.8f64..3.0, revolutions in 0u32..4,
+            lambda in -0.95f64..0.95,
+            (x, revolutions) in prop_oneof![(-0.8f64..0.85, 0u32..4), (1.15f64..3.0, Just(0))],
         ) {
-            prop_assume!((x - 1.0).abs() > 0.1 && (revolutions == 0 || x < 0.85));
             let c = curve(lambda, revolutions);
             let h = 1e-3;
             let at = |k: f64| c.time(x + k * h);
