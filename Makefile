@@ -15,9 +15,9 @@ PORT ?= 8017
 menu: ## print this menu
 	@awk -F ':.*## ' '/^[a-z-]+:.*## / { printf "make %-13s %s\n", $$1, $$2 }' $(MAKEFILE_LIST)
 
-build: page ## build dist/sunreach.html and dist/site, and the command line; solve the default flight with it
+build: page ## build dist/sunreach.html, dist/site and the command line, which then says the default flight
 	cargo build --locked --quiet --profile quick --package cli
-	@$(CLI) solve --pretty ''
+	@$(CLI) solve --pretty '' | sed -n 1p
 
 run: build ## build, then serve the page on 127.0.0.1 (PORT=8017, or the next free one)
 	@node web/serve.mjs $(PORT)

@@ -1,6 +1,6 @@
 //! The documents keep their word: what they link to exists, and their tables are those in force.
 
-use scenario::keys::KEYS;
+use scenario::keys::{KEYS, KeyInfo};
 use scenario::refused::refused;
 use tests::repository::{files, root, text};
 
@@ -61,8 +61,8 @@ fn files_that_documents_name_exist() {
 fn key_table() -> String {
     let mut table = String::from("| key | meaning | range | unit | default |\n|---|---|---|---|---|\n");
     for info in KEYS {
-        let unit = if info.unit.is_empty() { "" } else { info.unit };
-        table += &format!("| `{}` | {} | {} | {unit} | {} |\n", info.key, info.help, info.range, info.default);
+        let KeyInfo { key, help, range, unit, default, .. } = info;
+        table += &format!("| `{key}` | {help} | {range} | {unit} | {default} |\n");
     }
     table
 }
@@ -76,7 +76,8 @@ fn the_table_of_keys_is_the_one_in_force() {
 #[test]
 fn what_the_readme_calls_refused_is_refused() {
     let readme = text("README.md");
-    let line = readme.lines().find(|line| line.starts_with("Read, but refused")).expect("a list of what is refused");
+    let line =
+        readme.lines().find(|line| line.starts_with("Read, but refused")).expect("a list of what is refused");
     for (words, link) in [
         ("films other than `ideal`", "film=aluminised"),
         ("`cone_max_deg` below 90", "cone_max_deg=60"),

@@ -50,12 +50,16 @@ fn more_acceleration_is_never_slower() {
 #[test]
 fn scaling_both_radii_scales_time_by_the_three_halves_power() {
     // The force falls with the square of distance as gravity does, so the lightness number is the same everywhere.
-    let scales = 0.25f64..4.0;
+    // Radii stay within the 0.2 to 40 au that a link takes.
+    let scales = 0.75f64..4.0;
     check(60, (-1.3f64..1.3, acceleration(), scales), |(ln, ac, scale)| {
         prop_assume!(ln.abs() > 1e-3);
         let to_au = ln.exp();
         let (small, large) = (time_d(&link(1.0, to_au, ac)), time_d(&link(scale, scale * to_au, ac)));
-        prop_assert!((large / small / scale.powf(1.5) - 1.0).abs() < 1e-9, "{small} d and {large} d, {scale}");
+        prop_assert!(
+            (large / small / scale.powf(1.5) - 1.0).abs() < 1e-9,
+            "{small} d and {large} d, {scale}"
+        );
         Ok(())
     });
 }
@@ -81,7 +85,8 @@ fn texts() -> impl Strategy<Value = String> {
             .prop_map(str::to_owned),
         1 => "[-+0-9.,eEnaif ]{0,8}",
     ];
-    let useful = ["ac_mm_s2", "from", "to", "from_orbit", "to_orbit", "steer", "cone_deg", "deadline_d", "isp_s"];
+    let useful =
+        ["ac_mm_s2", "from", "to", "from_orbit", "to_orbit", "steer", "cone_deg", "deadline_d", "isp_s"];
     let key = prop_oneof![
         4 => prop::sample::select(useful.to_vec()).prop_map(str::to_owned),
         1 => prop::sample::select(KEYS).prop_map(|info| info.key.to_owned()),

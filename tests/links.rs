@@ -18,7 +18,9 @@ fn published() -> Vec<Published> {
     let lines = text.lines().filter(|line| !line.starts_with('#') && !line.trim().is_empty());
     let read = |line: &str| {
         let fields: Vec<&str> = line.split('\t').collect();
-        let [link, canonical, time, note] = fields[..] else { panic!("four fields, not {}: {line}", fields.len()) };
+        let [link, canonical, time, note] = fields[..] else {
+            panic!("four fields, not {}: {line}", fields.len())
+        };
         assert!(!note.is_empty(), "{line}: say where it was published");
         let time_d = (time != "-").then(|| time.parse().unwrap_or_else(|_| panic!("{line}: no time")));
         Published { link: link.to_owned(), canonical: canonical.to_owned(), time_d }
@@ -45,7 +47,10 @@ fn every_published_link_still_gives_its_flight_time() {
         let flight = answer.unwrap_or_else(|errors| panic!("{link}: {errors:?}")).report.flight;
         let time_d = flight.time_d.unwrap_or_else(|| panic!("{link}: {:?}", flight.status));
         // Solved to 1e-10; sines and cosines differ by a last place between machines.
-        assert!((time_d / recorded - 1.0).abs() < 1e-9, "{link}: {time_d} d now, {recorded} d when published");
+        assert!(
+            (time_d / recorded - 1.0).abs() < 1e-9,
+            "{link}: {time_d} d now, {recorded} d when published"
+        );
     }
 }
 
@@ -62,7 +67,11 @@ fn links_without_a_time_give_no_flight() {
 fn every_example_is_listed() {
     let links = published();
     for example in EXAMPLES {
-        assert!(links.iter().any(|row| row.canonical == example.link), "add {} to tests/links.txt", example.link);
+        assert!(
+            links.iter().any(|row| row.canonical == example.link),
+            "add {} to tests/links.txt",
+            example.link
+        );
     }
 }
 

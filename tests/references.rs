@@ -95,7 +95,8 @@ fn remembered_times_to_mars_are_near() {
     let table = reference("published.json");
     for row in list(&table, "/mars_rough") {
         let ac = number(row, "/inputs/ac_mm_s2");
-        let (low, high, slack) = (number(row, "/value/0"), number(row, "/value/1"), number(row, "/tolerance"));
+        let (low, high, slack) =
+            (number(row, "/value/0"), number(row, "/value/1"), number(row, "/tolerance"));
         let time_d = tests::time_d(&format!("ac_mm_s2={ac}"));
         let near = low * (1.0 - slack)..=high * (1.0 + slack);
         assert!(near.contains(&time_d), "{time_d} d at {ac} mm/s2 [{}]", words(row, "/source"));
@@ -132,7 +133,10 @@ fn loading_and_sunlight_are_the_published_ones() {
     let table = reference("published.json");
     let rows = list(&table, "/loading");
     check_record(&rows[0], loading::critical_loading_g_m2());
-    check_record(&rows[1], loading::acceleration_mm_s2(1000.0, 1.0, 1.0) * loading::loading_g_m2(1000.0, 1.0));
+    check_record(
+        &rows[1],
+        loading::acceleration_mm_s2(1000.0, 1.0, 1.0) * loading::loading_g_m2(1000.0, 1.0),
+    );
     let rows = list(&table, "/irradiance");
     check_record(&rows[0], IRRADIANCE_W_M2);
     check_record(&rows[1], PRESSURE_N_M2);

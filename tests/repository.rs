@@ -125,7 +125,10 @@ mod tests {
     fn comments_and_strings_are_blanked_and_code_is_not() {
         let text = "let a = 'x'; // unsafe\nlet b: &'static str = \"todo!()\\\"\"; /* b /* c */ d */ f(r#\"std::fs\"#);";
         let code = rust_code(text);
-        assert_eq!(code.split_whitespace().collect::<Vec<_>>().join(" "), "let a = ; let b: &'static str = ; f( );");
+        assert_eq!(
+            code.split_whitespace().collect::<Vec<_>>().join(" "),
+            "let a = ; let b: &'static str = ; f( );"
+        );
         assert_eq!(code.lines().count(), 2);
         assert_eq!(rust_code("number(r, '\\'', r)"), "number(r,     , r)");
     }

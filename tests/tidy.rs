@@ -11,7 +11,7 @@ const ARROWS: &[(&str, &[&str], &[&str])] = &[
     ("numerics", &[], &["nalgebra"]),
     // jiff: civil dates for epochs, without zones or clock.
     ("orbits", &[], &["nalgebra", "jiff"]),
-    ("sail", &["numerics", "orbits"], &[]),
+    ("sail", &["numerics", "orbits"], &["nalgebra"]),
     ("optimal", &["numerics", "orbits", "sail"], &["nalgebra"]),
     ("study", &["numerics", "orbits", "sail", "optimal"], &[]),
     // The first crate to the right that turns values into text: serde starts here.
@@ -105,7 +105,10 @@ fn every_crate_has_the_one_lint_table() {
     }
     let manifests = files().into_iter().filter(|path| path.ends_with("Cargo.toml") && path != "Cargo.toml");
     for path in manifests.filter(|path| path != "web/bindings/Cargo.toml") {
-        assert!(text(&path).contains("[lints]\nworkspace = true"), "{path} does not take the workspace's lints");
+        assert!(
+            text(&path).contains("[lints]\nworkspace = true"),
+            "{path} does not take the workspace's lints"
+        );
     }
 }
 
@@ -168,7 +171,8 @@ fn files_stay_short() {
 #[test]
 fn no_file_names_a_machine_or_a_registry() {
     // Split, so that this file does not hold them.
-    let machines = [["/wo", "rk/"], ["/ro", "ot/"], ["/tm", "p/"], ["local", "host:"]].map(|halves| halves.concat());
+    let machines =
+        [["/wo", "rk/"], ["/ro", "ot/"], ["/tm", "p/"], ["local", "host:"]].map(|halves| halves.concat());
     let registries = [["crates", ".io"], ["npm", "js.org"], ["py", "pi.org"], ["python", "hosted.org"]];
     let registries = registries.map(|halves| halves.concat());
     for path in files() {

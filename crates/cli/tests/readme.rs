@@ -49,7 +49,9 @@ fn quoted_commands_write_what_is_quoted() {
         // Three dots stand for what is left out.
         let mut rest = written.as_str();
         for piece in expected.split("...").map(str::trim).filter(|piece| !piece.is_empty()) {
-            let Some(at) = rest.find(piece) else { panic!("{command} does not write {piece:?} there:\n{rest}") };
+            let Some(at) = rest.find(piece) else {
+                panic!("{command} does not write {piece:?} there:\n{rest}")
+            };
             rest = &rest[at + piece.len()..];
         }
         assert!(!expected.trim().is_empty(), "{command}: nothing is quoted");
@@ -64,6 +66,9 @@ fn the_usage_in_the_readme_is_the_one_printed() {
     let commands: Vec<&str> = help.lines().filter_map(|line| line.strip_prefix("  sunreach ")).collect();
     assert!(commands.len() >= 4);
     for command in commands.iter().filter(|command| !command.starts_with("--")) {
-        assert!(readme.contains(&format!("sunreach {command}")), "README.md does not show: sunreach {command}");
+        assert!(
+            readme.contains(&format!("sunreach {command}")),
+            "README.md does not show: sunreach {command}"
+        );
     }
 }

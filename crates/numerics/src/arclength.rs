@@ -246,8 +246,14 @@ mod tests {
         }
     }
 
-    const STRIDE: Stride =
-        Stride { first: 0.05, largest: 0.3, smallest: 1e-6, accept: 1e-3, wanted_correction: 0.02, budget: 500 };
+    const STRIDE: Stride = Stride {
+        first: 0.05,
+        largest: 0.3,
+        smallest: 1e-6,
+        accept: 1e-3,
+        wanted_correction: 0.02,
+        budget: 500,
+    };
 
     #[test]
     fn a_fold_is_rounded_and_the_goal_landed_on() {

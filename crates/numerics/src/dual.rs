@@ -80,6 +80,7 @@ impl<const N: usize> Mul for Dual<N> {
     }
 }
 
+#[allow(clippy::suspicious_arithmetic_impl, reason = "one reciprocal serves the value and every derivative")]
 impl<const N: usize> Div for Dual<N> {
     type Output = Self;
     #[inline(always)]
@@ -114,6 +115,7 @@ impl<const N: usize> Mul<f64> for Dual<N> {
     }
 }
 
+#[allow(clippy::suspicious_arithmetic_impl, reason = "one reciprocal serves the value and every derivative")]
 impl<const N: usize> Div<f64> for Dual<N> {
     type Output = Self;
     #[inline(always)]

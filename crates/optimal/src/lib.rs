@@ -4,4 +4,5 @@
 
 pub mod certificate;
 pub mod coplanar;
+pub mod excess;
 pub mod spatial;

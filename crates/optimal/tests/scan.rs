@@ -23,7 +23,7 @@ const PAIRS: [(f64, f64); 10] = [
     (20.0, 4.0),
 ];
 
-const STARTS: usize = 150;
+const STARTS: usize = 300;
 
 /// A fixed sequence of numbers in 0 to 1: D. E. Knuth's MMIX generator (*The Art of Computer Programming* 2,
 /// section 3.3.4), upper bits.

@@ -52,6 +52,12 @@ pub(crate) fn cautions(scenario: &Scenario, craft: &Craft, flight: &Flight) -> V
             short(ratio)
         ));
     }
+    if flight.arrive.as_deref().is_some_and(|date| date > "2051") {
+        cautions.push(
+            "Arrival after 2050: the planets\u{2019} elements are extrapolated beyond the years they were fitted to."
+                .into(),
+        );
+    }
     if craft.delivered_kg.is_some_and(|kg| kg <= 0.0) {
         cautions.push("The sail assembly alone is heavier than the total mass: no such craft exists.".into());
     }

@@ -1,9 +1,13 @@
-//! The two ends of a coplanar flight as the solvers see them: circles, and the bodies on them.
+//! The two ends of a flight as the solvers see them: circles or ellipses, and the bodies on them.
 
+use orbits::ephemeris::Traveller;
+use orbits::epochs;
 use orbits::impulsive::Body;
+use orbits::kepler::Elements;
 
+use crate::date::Date;
 use crate::report::End;
-use crate::schema::Place;
+use crate::schema::{Geometry, Place, Scenario};
 
 /// Radius of the circle that stands for a place in coplanar geometry, au.
 pub(crate) fn circle_au(place: &Place) -> f64 {
@@ -13,8 +17,28 @@ pub(crate) fn circle_au(place: &Place) -> f64 {
     }
 }
 
-/// The end as the report tells it, coplanar.
-pub(crate) fn end(place: &Place) -> End {
+/// The end as the report tells it: a circle in coplanar geometry, else the orbit at the departure date (J2000
+/// without one).
+pub(crate) fn end(place: &Place, scenario: &Scenario) -> End {
+    match scenario.geometry {
+        Geometry::Coplanar => circle_end(place),
+        Geometry::Spatial => spatial_end(place, scenario.depart.and_then(Date::j2000_d)),
+    }
+}
+
+fn spatial_end(place: &Place, depart_j2000_d: Option<f64>) -> End {
+    let orbit = traveller(place).elements(depart_j2000_d.unwrap_or(0.0));
+    End {
+        name: name(place),
+        semi_major_axis_au: orbit.semi_major_axis,
+        eccentricity: orbit.eccentricity,
+        inclination_deg: orbit.inclination_rad.to_degrees(),
+        node_deg: orbit.node_rad.to_degrees(),
+        arg_peri_deg: orbit.arg_peri_rad.to_degrees(),
+    }
+}
+
+fn circle_end(place: &Place) -> End {
     End {
         name: name(place),
         semi_major_axis_au: circle_au(place),
@@ -22,6 +46,24 @@ pub(crate) fn end(place: &Place) -> End {
         inclination_deg: 0.0,
         node_deg: 0.0,
         arg_peri_deg: 0.0,
+    }
+}
+
+/// The body that moves there, in space.
+pub(crate) fn traveller(place: &Place) -> Traveller {
+    match place {
+        Place::Planet(planet) => Traveller::Planet(*planet),
+        Place::Orbit(orbit) => Traveller::Ellipse {
+            at_epoch: Elements {
+                semi_major_axis: orbit.a_au,
+                eccentricity: orbit.e,
+                inclination_rad: orbit.i_deg.to_radians(),
+                node_rad: orbit.node_deg.to_radians(),
+                arg_peri_rad: orbit.arg_peri_deg.to_radians(),
+                mean_anomaly_rad: orbit.mean_anomaly_deg.to_radians(),
+            },
+            epoch_j2000_d: epochs::from_jd_tdb(orbit.epoch_jd_tdb),
+        },
     }
 }
 

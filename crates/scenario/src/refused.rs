@@ -46,16 +46,6 @@ const NOT_YET: &[Refusal] = &[
         rule: "is not solved by this version: leave it out (1)",
     },
     Refusal {
-        key: "geometry",
-        applies: |s| s.geometry == Geometry::Spatial,
-        rule: "is not solved by this version: use geometry=coplanar",
-    },
-    Refusal {
-        key: "depart",
-        applies: |s| s.depart.is_some(),
-        rule: "is not solved by this version: leave it out, circles have no dates",
-    },
-    Refusal {
         key: "vinf_km_s",
         applies: |s| s.vinf_km_s > 0.0,
         rule: "is not solved by this version: leave it out (0)",
@@ -67,8 +57,8 @@ const NOT_YET: &[Refusal] = &[
     },
     Refusal {
         key: "arrive",
-        applies: |s| s.arrive != Arrive::Orbit,
-        rule: "is not solved by this version: use arrive=orbit",
+        applies: |s| s.arrive == Arrive::Flyby,
+        rule: "flyby is not solved by this version: use arrive=orbit or arrive=rendezvous",
     },
     Refusal {
         key: "segments",

@@ -42,7 +42,7 @@ pub fn run(scenario: &Scenario) -> Result<Answer, Vec<LinkError>> {
         program: program(),
         link: encode(scenario),
         sentence: sentence::sentence(scenario, &craft, &flight, &impulsive),
-        ends: Ends { from: place::end(&scenario.from), to: place::end(&scenario.to) },
+        ends: Ends { from: place::end(&scenario.from, scenario), to: place::end(&scenario.to, scenario) },
         cautions: cautions::cautions(scenario, &craft, &flight),
         craft,
         flight,

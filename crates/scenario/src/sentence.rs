@@ -1,8 +1,8 @@
 //! The answer in one or two sentences of plain words.
 
-use crate::place::orbit_name;
+use crate::place::{name, orbit_name};
 use crate::report::{Craft, Flight, Impulsive, Status};
-use crate::schema::{Scenario, Steer};
+use crate::schema::{Arrive, Scenario, Steer};
 use crate::words::{days, grouped, short};
 
 /// What the report says, first of all.
@@ -11,7 +11,11 @@ pub(crate) fn sentence(scenario: &Scenario, craft: &Craft, flight: &Flight, impu
         (Some(area), Some(mass)) => format!("A {} m\u{b2} sail on {} kg", short(area), short(mass)),
         _ => format!("A sail of {} mm/s\u{b2}", short(craft.ac_mm_s2)),
     };
-    let (from, to) = (orbit_name(&scenario.from), orbit_name(&scenario.to));
+    let from = orbit_name(&scenario.from);
+    let to = match scenario.arrive {
+        Arrive::Rendezvous => name(&scenario.to),
+        Arrive::Orbit | Arrive::Flyby => orbit_name(&scenario.to),
+    };
     let rocket = &impulsive.same_start_same_end;
     let hohmann = format!(
         "from the same start a Hohmann transfer takes {} days and spends {} % of its mass as propellant.",
@@ -22,9 +26,13 @@ pub(crate) fn sentence(scenario: &Scenario, craft: &Craft, flight: &Flight, impu
         return format!("{sail}: no flight from {from} to {to} is shown. For comparison, {hohmann}");
     };
     let time = days(time_d);
+    let leaving = match (&flight.depart, &flight.arrive) {
+        (Some(depart), Some(arrive)) => format!(", leaving {} and arriving {}", day(depart), day(arrive)),
+        _ => String::new(),
+    };
     match (flight.status, scenario.steer) {
         (Status::Converged, Steer::Fastest) => {
-            format!("{sail} flies from {from} to {to} in {time} days; {hohmann}")
+            format!("{sail} flies from {from} to {to} in {time} days{leaving}; {hohmann}")
         }
         (_, Steer::Fastest) => {
             format!(
@@ -42,4 +50,9 @@ pub(crate) fn sentence(scenario: &Scenario, craft: &Craft, flight: &Flight, impu
              without matching it; {hohmann}"
         ),
     }
+}
+
+/// The calendar day of an ISO instant.
+fn day(instant: &str) -> &str {
+    instant.split('T').next().unwrap_or(instant)
 }

@@ -38,7 +38,7 @@ export function mountAnswer({ state, client }: Page): void {
   });
   state.verdict.watch(({ link, errors }) => {
     if (link !== null || errors.length === 0) return;
-    if (!state.shown.get()) sentence.textContent = "No flight yet.";
+    if (!state.shown.get()) sentence.textContent = "No flight yet: it appears when the inputs can be solved.";
     clearTimeout(timer);
     timer = setTimeout(() => (part("spoken").textContent = `The inputs do not match the result: ${errors.map(({ key, rule }) => `${key}: ${rule}`).join("; ")}`), SPOKEN_MS);
   });
@@ -47,6 +47,8 @@ export function mountAnswer({ state, client }: Page): void {
 function proofLine(report: Report): (Node | string)[] {
   const { status, proof } = report.flight;
   const badge = h("span", { class: status === "converged" || status === "flown" ? "badge" : "badge bad" }, STANDING[status]);
+  // Between identical ends nothing was solved and there is nothing to prove.
+  if (proof.extremals_found === 0 && status === "converged") return [badge];
   // A flight that aims at no optimum ends beside the target; that is a distance, not an error.
   const miss = status === "flown" ? "ends beside the target's orbit by" : "re-flown to within";
   const parts = [

@@ -22,7 +22,7 @@ const ASSUMPTIONS: readonly (readonly [string, string])[] = [
   ],
   ["Attitude followed at once", "Turn rates and jumps are shown, not limited; whether a craft can turn so is a separate question."],
   [
-    "A Sun-grazing flight is only a sum",
+    "Nothing special close to the Sun",
     "Closer than 0.15 au a caution appears: film temperature, degradation and the Sun's size are then no longer small matters.",
   ],
   ["Time scale TDB", "About 69 s ahead of UTC."],

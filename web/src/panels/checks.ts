@@ -24,7 +24,7 @@ export function mountChecks({ client }: Page): void {
   const section = part("checks");
   section.append(
     h("h2", { id: "checks-title" }, "Checks"),
-    h("p", {}, "Does this program, in this browser, give the values that others published?"),
+    h("p", {}, "Does this program, in this browser, give the values that stand in the literature or that other methods found?"),
     verdict,
     again,
     body,

@@ -77,7 +77,10 @@ export function mountNotice({ state }: Page): void {
     }
   };
   state.verdict.watch(showStale);
-  state.shown.watch(showStale);
+  state.shown.watch((shown) => {
+    part("results").classList.toggle("empty", shown === null);
+    showStale();
+  });
   state.trouble.watch((crash) => {
     showStale();
     trouble.replaceChildren();

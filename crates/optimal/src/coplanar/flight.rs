@@ -4,10 +4,11 @@ use numerics::dual::Dual;
 use numerics::ode::{DenseStep, Flow, Mode, Options, Termination, integrate, integrate_observed};
 use sail::trajectory::{Jump, Sample, Sampling, Trajectory};
 
-use super::extremal::{Extremal, attitude};
+use super::extremal::{Augmented, Extremal, attitude};
 use super::shooting::Unknowns;
 use super::solve::Problem;
 use crate::certificate::{Evidence, REFLY_TOLERANCE};
+use crate::excess::{Allowance, End, Used};
 
 /// A flown extremal. Canonical units (au).
 #[derive(Clone, Debug)]
@@ -20,6 +21,8 @@ pub struct Flown {
     pub evidence: Evidence,
     /// Eccentricity of the orbit the craft ends on.
     pub final_eccentricity: f64,
+    /// Excess speeds used at the two ends.
+    pub excess: Used,
 }
 
 /// The extremal with two quadratures: angle swept, and velocity change by the sail.
@@ -92,14 +95,31 @@ pub fn swept_angle(problem: &Problem, unknowns: &Unknowns) -> Option<f64> {
 ///
 /// `None` when the integration itself fails; a flight that misses its target is returned with that evidence.
 pub fn fly(problem: &Problem, unknowns: &Unknowns) -> Option<Flown> {
-    let recorder = Recorder(Extremal { lightness: problem.lightness });
     let l = unknowns.costate;
-    let start = [1.0, 0.0, 1.0, l.x, l.y, l.z, 0.0, 0.0];
+    fly_from(problem, &[1.0, 0.0, 1.0, l.x, l.y, l.z], unknowns.time, &Allowance::NONE)
+}
+
+/// Flies from `start` (in units of the start radius) for `time`, and judges the excess at both ends by `allowance`.
+pub(super) fn fly_from(
+    problem: &Problem,
+    start: &Augmented<f64>,
+    time: f64,
+    allowance: &Allowance,
+) -> Option<Flown> {
+    let recorder = Recorder(Extremal { lightness: problem.lightness });
+    let [r, u, v, l_r, l_u, l_v] = *start;
+    let speed = problem.start_radius.powf(-0.5);
+    let end = |[_, u, v, l_r, l_u, l_v]: Augmented<f64>, circular: f64, sign: f64, allowance: f64| {
+        let scale = sign / l_r.hypot(l_u).hypot(l_v);
+        End { relative: [u * speed, (v - circular) * speed], primer: [l_u * scale, l_v * scale], allowance }
+    };
+    let leaving = end(*start, 1.0, -1.0, allowance.departure);
+    let start = [r, u, v, l_r, l_u, l_v, 0.0, 0.0];
     let first = recorder.0.hamiltonian(&augmented(&start));
     let mut drift = 0.0f64;
     let mut jumps = Vec::new();
-    let mut mode = Mode(u32::from(l.z > 0.0));
-    let sampling = Sampling::for_sweep(sweep_estimate(problem, unknowns.time));
+    let mut mode = Mode(u32::from(l_v > 0.0));
+    let sampling = Sampling::for_sweep(sweep_estimate(problem, time));
     let mut samples = vec![recorder.sample(mode, 0.0, &start)];
     let options = Options { tolerance: REFLY_TOLERANCE, max_steps: 80_000 };
     let mut observe = |step: &DenseStep<f64, 8>| {
@@ -119,25 +139,29 @@ pub fn fly(problem: &Problem, unknowns: &Unknowns) -> Option<Flown> {
             samples.push(recorder.sample(mode, step.start + x * step.length, &step.at(x)));
         }
     };
-    let outcome = integrate_observed(&recorder, &start, unknowns.time, &options, &mut observe);
+    let outcome = integrate_observed(&recorder, &start, time, &options, &mut observe);
     if outcome.termination != Termination::Reached {
         return None;
     }
     let [r, u, v, .., swept, delta_v] = outcome.state;
     let ratio = problem.ratio();
-    let (length, speed) = (problem.start_radius, problem.start_radius.powf(-0.5));
+    let length = problem.start_radius;
+    let reached = augmented(&outcome.state);
+    let arriving = end(reached, ratio.powf(-0.5), 1.0, allowance.arrival);
     let evidence = Evidence {
         position_error: (r - ratio).abs() * length,
-        speed_error: u.hypot(v - ratio.powf(-0.5)) * speed,
+        speed_error: arriving.beyond(),
+        excess_misfit: leaving.misfit().max(arriving.misfit()),
         target_distance: problem.target_radius,
         target_speed: problem.target_radius.powf(-0.5),
         gap: (problem.target_radius - problem.start_radius).abs(),
         hamiltonian_drift: drift,
-        hamiltonian_at_arrival: recorder.0.hamiltonian(&augmented(&outcome.state)),
+        hamiltonian_at_arrival: recorder.0.hamiltonian(&reached),
     };
     let (_, final_eccentricity) = sail::motion::polar::shape(r, u, v);
     let trajectory = Trajectory { samples, jumps, swept, delta_v }.stretched(length);
-    Some(Flown { time: unknowns.time * problem.time_scale(), trajectory, evidence, final_eccentricity })
+    let excess = Used { departure: leaving.speed(), arrival: arriving.speed() };
+    Some(Flown { time: time * problem.time_scale(), trajectory, evidence, final_eccentricity, excess })
 }
 
 #[cfg(test)]

@@ -38,10 +38,10 @@ pub struct Shooting {
     pub tolerance: f64,
 }
 
-const MAX_STEPS: usize = 40_000;
+pub(super) const MAX_STEPS: usize = 40_000;
 
 /// Two unit vectors that span the plane across `axis`.
-fn tangents(axis: &Vector3<f64>) -> [Vector3<f64>; 2] {
+pub(super) fn tangents(axis: &Vector3<f64>) -> [Vector3<f64>; 2] {
     let helper = if axis.x.abs() < 0.6 { Vector3::x() } else { Vector3::y() };
     let first = axis.cross(&helper).normalize();
     [first, axis.cross(&first)]
@@ -98,8 +98,13 @@ impl Equations<3> for Shooting {
     }
 
     fn trusted_fraction(&self, point: &Unknowns, step: &SVector<f64, 3>) -> f64 {
-        let turn: f64 = step.fixed_rows::<2>(0).norm();
-        let stretch: f64 = step[2].abs() / point.time;
-        (0.6 / turn).min(0.3 / stretch).min(1.0)
+        trusted(point, step)
     }
+}
+
+/// The fraction of a step (two tangents, time) that keeps near `point`.
+pub(super) fn trusted(point: &Unknowns, step: &SVector<f64, 3>) -> f64 {
+    let turn: f64 = step.fixed_rows::<2>(0).norm();
+    let stretch: f64 = step[2].abs() / point.time;
+    (0.6 / turn).min(0.3 / stretch).min(1.0)
 }

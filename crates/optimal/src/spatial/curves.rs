@@ -35,16 +35,15 @@ pub struct Setting {
 /// One unit of a time column, in units of the target's (and start's) mean time scale.
 const TIME_COLUMN: f64 = 3.0;
 const SHAPE_COLUMN: f64 = 0.3;
-const PHASE_COLUMN: f64 = 2.0;
+pub(super) const PHASE_COLUMN: f64 = 2.0;
 
 /// Rows of position and velocity mismatch, in parts of the target orbit's size and speed.
-fn row_scales(setting: &Setting) -> [f64; 6] {
-    let a = setting.ends.to.semi_major_axis;
-    let (length, speed) = (1.0 / a, a.sqrt());
+pub(super) fn row_scales(target_axis: f64) -> [f64; 6] {
+    let (length, speed) = (1.0 / target_axis, target_axis.sqrt());
     [length, length, length, speed, speed, speed]
 }
 
-fn moved_point(point: &Point, costate: Vector6<f64>, time: f64, arrival: f64, parameter: f64) -> Point {
+pub(super) fn moved_point(point: &Point, costate: Vector6<f64>, time: f64, arrival: f64, parameter: f64) -> Point {
     Point {
         costate: (point.costate + costate).normalize(),
         time: point.time + time,
@@ -71,7 +70,7 @@ struct OpenArrival<'a> {
 impl OpenArrival<'_> {
     /// Six mismatches, the transversality condition l . (rate of the target) = 0, and the sphere.
     fn rows(&self, point: &Point, parameter_column: f64) -> Row<8, 9> {
-        let scales = row_scales(self.setting);
+        let scales = row_scales(self.setting.ends.to.semi_major_axis);
         let Terminal { end, rates, by_costate, by_start } = &self.terminal;
         let (along, bend) = (coasting_rate(&self.target), coasting_acceleration(&self.target));
         let shifted: State = std::array::from_fn(|i| self.target[i] + self.target_shift[i] * SHIFT);
@@ -175,6 +174,30 @@ pub enum Clock {
     Departure,
 }
 
+/// Six mismatches with a body that is at `target` and moves on at `along`, and the sphere; `by_leaving`: derivative of
+/// state and costate at arrival with respect to the departure time, at fixed flight time.
+pub(super) fn meeting_rows(
+    scales: &[f64; 6],
+    costate: &Vector6<f64>,
+    terminal: &Terminal,
+    by_leaving: &[f64; 12],
+    (target, along): (&State, &State),
+) -> Row<7, 8> {
+    let Terminal { end, rates, by_costate, .. } = terminal;
+    let mut value = SVector::<f64, 7>::zeros();
+    let mut j = SMatrix::<f64, 7, 8>::zeros();
+    for i in 0..6 {
+        value[i] = (end[i] - target[i]) * scales[i];
+        for k in 0..6 {
+            j[(i, k)] = by_costate[(i, k)] * scales[i];
+        }
+        j[(i, 6)] = (rates[i] - along[i]) * scales[i] * PHASE_COLUMN;
+        j[(i, 7)] = (by_leaving[i] - along[i]) * scales[i] * PHASE_COLUMN;
+    }
+    j.row_mut(6).fixed_columns_mut::<6>(0).copy_from(&costate.transpose());
+    (value, j)
+}
+
 /// Meeting the target body itself.
 pub struct Meeting<'a> {
     /// Orbits and sail.
@@ -194,21 +217,9 @@ impl Curve<7, 8> for Meeting<'_> {
         let (start_rate, along) = (coasting_rate(&start), coasting_rate(&target));
         let terminal =
             fly(setting.lightness, &start, &start_rate, &point.costate, point.time, setting.tolerance)?;
-        let scales = row_scales(setting);
-        let Terminal { end, rates, by_costate, by_start } = &terminal;
-        let mut value = SVector::<f64, 7>::zeros();
-        let mut j = SMatrix::<f64, 7, 8>::zeros();
-        for i in 0..6 {
-            value[i] = (end[i] - target[i]) * scales[i];
-            for k in 0..6 {
-                j[(i, k)] = by_costate[(i, k)] * scales[i];
-            }
-            j[(i, 6)] = (rates[i] - along[i]) * scales[i] * PHASE_COLUMN;
-            let by_leaving = if self.clock == Clock::Departure { by_start[i] } else { 0.0 };
-            j[(i, 7)] = (by_leaving - along[i]) * scales[i] * PHASE_COLUMN;
-        }
-        j.row_mut(6).copy_from(&sphere_row::<8>(point).transpose());
-        Some((value, j))
+        let by_leaving = if self.clock == Clock::Departure { terminal.by_start } else { [0.0; 12] };
+        let scales = row_scales(setting.ends.to.semi_major_axis);
+        Some(meeting_rows(&scales, &point.costate, &terminal, &by_leaving, (&target, &along)))
     }
 
     fn moved(&self, point: &Point, step: &SVector<f64, 8>) -> Point {

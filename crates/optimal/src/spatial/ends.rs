@@ -1,6 +1,8 @@
 //! The two orbits of a spatial flight, and how they grow out of coplanar circles.
 
+use nalgebra::Vector3;
 use orbits::kepler::Elements;
+use orbits::two_body::State as TwoBody;
 
 /// Position and velocity.
 pub type State = [f64; 6];
@@ -70,9 +72,7 @@ fn longitude(orbit: &Elements) -> f64 {
 }
 
 fn state(orbit: &Elements, time: f64) -> Option<State> {
-    let state = orbit.later(1.0, time).state(1.0).ok()?;
-    let (r, v) = (state.position, state.velocity);
-    Some([r.x, r.y, r.z, v.x, v.y, v.z])
+    orbit.later(1.0, time).state(1.0).ok().map(|body| ordered(&body))
 }
 
 /// Rate of a state under the Sun's gravity alone.
@@ -89,4 +89,17 @@ pub fn coasting_acceleration(s: &State) -> State {
     let radial = 3.0 * (s[0] * s[3] + s[1] * s[4] + s[2] * s[5]) / r2;
     let jerk = |i: usize| pull * (s[3 + i] - radial * s[i]);
     [pull * s[0], pull * s[1], pull * s[2], jerk(0), jerk(1), jerk(2)]
+}
+
+/// A two-body state in the order of [`State`].
+pub fn ordered(body: &TwoBody) -> State {
+    let (r, v) = (body.position, body.velocity);
+    [r.x, r.y, r.z, v.x, v.y, v.z]
+}
+
+/// Eccentricity of the ellipse that a state lies on; `None` where it lies on none.
+pub fn eccentricity(state: &State) -> Option<f64> {
+    let [x, y, z, vx, vy, vz] = *state;
+    let body = TwoBody { position: Vector3::new(x, y, z), velocity: Vector3::new(vx, vy, vz) };
+    Elements::of_state(&body, 1.0).ok().map(|orbit| orbit.eccentricity)
 }

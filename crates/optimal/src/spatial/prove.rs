@@ -74,6 +74,33 @@ pub fn answered(kind: Kind, conditions: &Conditions<'_>, traced: Flight) -> Opti
 ///
 /// `None` when the integration itself fails; a flight that misses its target is returned with that evidence.
 pub fn prove(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<Flown> {
+    let recorder = Recorder(Extremal { lightness: conditions.lightness });
+    let sampling = Sampling::for_sweep(flight.time * conditions.target_axis.min(1.0).powf(-1.5));
+    let mut samples = Vec::new();
+    let (end, evidence) = reflown(conditions, flight, tolerance, &mut |step| {
+        if samples.is_empty() {
+            samples.push(recorder.sample(step.start, &step.from));
+        }
+        for x in sampling.fractions(step.to[12] - step.from[12]) {
+            samples.push(recorder.sample(step.start + x * step.length, &step.at(x)));
+        }
+    })?;
+    let trajectory = Trajectory { samples, jumps: Vec::new(), swept: end[12], delta_v: end[13] };
+    Some(Flown { flight: *flight, trajectory, evidence, end: std::array::from_fn(|i| end[i]) })
+}
+
+/// What [`prove`] proves, without the path: several times cheaper.
+pub fn evidence(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<Evidence> {
+    reflown(conditions, flight, tolerance, &mut |_| ()).map(|(_, evidence)| evidence)
+}
+
+/// Flies `flight`, shows every step, and judges where it ends.
+fn reflown(
+    conditions: &Conditions<'_>,
+    flight: &Flight,
+    tolerance: f64,
+    show: &mut dyn FnMut(&DenseStep<f64, 14>),
+) -> Option<(Recorded, Evidence)> {
     let start = (conditions.from)(flight.departure)?;
     let target = (conditions.to)(flight.arrival)?;
     let recorder = Recorder(Extremal { lightness: conditions.lightness });
@@ -81,17 +108,13 @@ pub fn prove(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Op
     state[..6].copy_from_slice(&start);
     state[6..12].copy_from_slice(flight.costate.as_slice());
     let first = recorder.0.hamiltonian(&augmented(&state));
-    let sampling = Sampling::for_sweep(flight.time * conditions.target_axis.min(1.0).powf(-1.5));
-    let mut samples = vec![recorder.sample(0.0, &state)];
     let mut largest_change = 0.0f64;
     let mut observe = |step: &DenseStep<f64, 14>| {
         let change = (recorder.0.hamiltonian(&augmented(&step.to)) - first).abs();
         if change > largest_change || change.is_nan() {
             largest_change = change;
         }
-        for x in sampling.fractions(step.to[12] - step.from[12]) {
-            samples.push(recorder.sample(step.start + x * step.length, &step.at(x)));
-        }
+        show(step);
     };
     let options = Options { tolerance, max_steps: 80_000 };
     let outcome = integrate_observed(&recorder, &state, flight.time, &options, &mut observe);
@@ -109,13 +132,12 @@ pub fn prove(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Op
     let evidence = Evidence {
         position_error: gap(0).hypot(gap(1)).hypot(gap(2)),
         speed_error: gap(3).hypot(gap(4)).hypot(gap(5)),
+        excess_misfit: 0.0,
         target_distance: target[0].hypot(target[1]).hypot(target[2]),
         target_speed: target[3].hypot(target[4]).hypot(target[5]),
         gap: apart,
         hamiltonian_drift: largest_change / first.abs().max(at_arrival.abs()),
         hamiltonian_at_arrival: at_arrival,
     };
-    let trajectory = Trajectory { samples, jumps: Vec::new(), swept: end[12], delta_v: end[13] };
-    let end = std::array::from_fn(|i| outcome.state[i]);
-    Some(Flown { flight: *flight, trajectory, evidence, end })
+    Some((end, evidence))
 }

@@ -1,32 +1,27 @@
-//! The sail flight of a scenario: picks the solver, and turns what it found into the report's words and units.
+//! Coplanar flights: circles without dates.
 
-use optimal::certificate::{Evidence, Verdict};
 use optimal::coplanar::flight::{Flown, fly};
 use optimal::coplanar::guess;
 use optimal::coplanar::solve::{Extremum, Problem, Route, solve};
 use orbits::units;
-use sail::film::{ALUMINISED, Optics};
 use sail::motion::polar;
 use sail::motion::steered::{self, Ending, Law, Plan, Steered};
 use sail::steering::{fixed, local};
-use sail::temperature::film_temperature_k;
-use sail::trajectory::Trajectory;
+use sail::trajectory::{Sample, Trajectory};
 use study::deadline::lightness_needed;
 
-use crate::histories::{columns, jumps, km, turn_rate_deg_d};
+use super::{THERMAL, described, judged, prove, unsolved, wrapped_deg};
+use crate::histories::{columns, km};
 use crate::place::circle_au;
-use crate::report::{Branch, Columns, Flight, Margin, Proof, SecondOrder, Status};
+use crate::report::{Branch, Columns, Flight, Margin, Status};
 use crate::schema::{Scenario, Steer};
-
-/// An ideal mirror would stay cold: its temperature is told with the thermal numbers of this film.
-const THERMAL: &Optics = &ALUMINISED;
 
 /// Circles closer than this (in parts of their radius) are one orbit: a flight between them would be within the
 /// proof's own threshold before it began.
 const SAME_ORBIT: f64 = optimal::certificate::CONVERGED_MISS;
 
 /// The flight of `scenario` at this lightness number, and its histories (empty when there is none to show).
-pub(crate) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
+pub(super) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
     let problem = Problem {
         start_radius: circle_au(&scenario.from),
         target_radius: circle_au(&scenario.to),
@@ -51,80 +46,21 @@ fn local_law(problem: &Problem) -> Law {
     Law::Local(if outward { local::Towards::Larger } else { local::Towards::Smaller })
 }
 
-/// A flight without numbers: what is known is the status and why.
-fn unsolved(status: Status, message: String, method: &str) -> Flight {
-    Flight {
-        status,
-        message: Some(message),
-        time_d: None,
-        revolutions: None,
-        depart: None,
-        arrive: None,
-        vinf_used_km_s: None,
-        c3_km2_s2: None,
-        vinf_arrive_km_s: None,
-        sun_distance_min_au: None,
-        sun_distance_max_au: None,
-        film_temp_max_k: None,
-        turn_rate_max_deg_d: None,
-        jumps: Vec::new(),
-        sail_dv_km_s: None,
-        lead_angle_deg: None,
-        earth_range_max_au: None,
-        final_eccentricity: None,
-        estimate: None,
-        proof: Proof {
-            position_error_km: None,
-            speed_error_m_s: None,
-            hamiltonian_drift: None,
-            extremals_found: 0,
-            second_order: SecondOrder::NotTested,
-            method: method.to_owned(),
-        },
-        branches: Vec::new(),
-        margin: None,
-    }
-}
-
-/// The numbers that every flown path gives, whoever steered it.
-fn described(problem: &Problem, time: f64, path: &Trajectory, method: &str) -> Flight {
-    let (nearest, farthest) = path.distance_range();
-    let temperature = |s: &sail::trajectory::Sample| {
-        film_temperature_k(THERMAL, s.position[0].hypot(s.position[1]), s.cone.cos())
-    };
-    let revolutions = path.swept / std::f64::consts::TAU;
-    // A body on the target circle moves this far during the flight; it must start behind the arrival point.
+/// [`described`], with the angle by which a body on the target circle must lead: it moves during the flight and must
+/// start behind the arrival point.
+fn described_on_circles(problem: &Problem, time: f64, path: &Trajectory, method: &str) -> Flight {
     let target_moves = time * problem.target_radius.powf(-1.5);
-    Flight {
-        message: None,
-        time_d: Some(units::days(time)),
-        revolutions: Some(revolutions),
-        vinf_used_km_s: Some(0.0),
-        c3_km2_s2: Some(0.0),
-        vinf_arrive_km_s: Some(0.0),
-        sun_distance_min_au: Some(nearest),
-        sun_distance_max_au: Some(farthest),
-        film_temp_max_k: Some(path.samples.iter().map(temperature).fold(0.0, f64::max)),
-        turn_rate_max_deg_d: Some(turn_rate_deg_d(path.turn_rate_max())),
-        jumps: jumps(path),
-        sail_dv_km_s: Some(units::km_per_s(path.delta_v)),
-        lead_angle_deg: Some(wrapped_deg((path.swept - target_moves).to_degrees())),
-        ..unsolved(Status::Flown, String::new(), method)
-    }
-}
-
-/// An angle in (-180, 180] deg.
-fn wrapped_deg(angle_deg: f64) -> f64 {
-    let turned = angle_deg.rem_euclid(360.0);
-    if turned > 180.0 { turned - 360.0 } else { turned }
+    let lead = wrapped_deg((path.swept - target_moves).to_degrees());
+    Flight { lead_angle_deg: Some(lead), ..described(time, path, method) }
 }
 
 fn nothing_to_fly(scenario: &Scenario, problem: &Problem) -> (Flight, Columns) {
     let (r, v) = (problem.start_radius, problem.start_radius.powf(-0.5));
     let edge_on = std::f64::consts::FRAC_PI_2;
-    let sample = sail::trajectory::Sample::coplanar(0.0, [r, 0.0, v], 0.0, edge_on, 0.0, 0.0);
+    let sample = Sample::coplanar(0.0, [r, 0.0, v], 0.0, edge_on, 0.0, 0.0);
     let path = Trajectory { samples: vec![sample], jumps: Vec::new(), swept: 0.0, delta_v: 0.0 };
-    let mut flight = described(problem, 0.0, &path, "nothing to fly: start and target are the same orbit");
+    let mut flight =
+        described_on_circles(problem, 0.0, &path, "nothing to fly: start and target are the same orbit");
     flight.message = Some(
         "Start and target are the same orbit to one part in ten million: there is nothing to fly.".into(),
     );
@@ -141,18 +77,13 @@ fn fastest(scenario: &Scenario, problem: &Problem) -> (Flight, Columns) {
     let solved = solve(problem);
     let flown = solved.as_ref().and_then(|extremum| fly(problem, &extremum.unknowns));
     let (Some(solved), Some(flown)) = (solved, flown) else { return not_converged(problem) };
-    let status = match flown.evidence.verdict() {
-        Verdict::Converged => Status::Converged,
-        Verdict::Approximate => Status::Approximate,
-        Verdict::NotConverged => return not_converged(problem),
-    };
-    let mut flight = described(problem, flown.time, &flown.trajectory, &method(&solved));
+    let Some((status, message)) = judged(&flown.evidence) else { return not_converged(problem) };
+    let mut flight = described_on_circles(problem, flown.time, &flown.trajectory, &method(&solved));
     flight.status = status;
-    flight.message = (status == Status::Approximate).then(|| {
-        "Approximate: the flight misses the proof's thresholds; treat the last digits with care.".into()
-    });
+    flight.message = message;
     flight.final_eccentricity = Some(flown.final_eccentricity);
     prove(&mut flight.proof, &flown.evidence);
+    flight.proof.extremals_found = 1;
     flight.branches = vec![Branch {
         time_d: units::days(flown.time),
         revolutions: flown.trajectory.swept / std::f64::consts::TAU,
@@ -179,13 +110,6 @@ fn method(solved: &Extremum) -> String {
         Route::Continuation => "continuation from a solved neighbour",
     };
     format!("Pontryagin's principle, shooting: {route}, {} passes; re-flown at 1e-13", solved.passes)
-}
-
-fn prove(proof: &mut Proof, evidence: &Evidence) {
-    proof.position_error_km = Some(km(evidence.position_error));
-    proof.speed_error_m_s = Some(units::km_per_s(evidence.speed_error) * 1e3);
-    proof.hamiltonian_drift = Some(evidence.hamiltonian_drift);
-    proof.extremals_found = 1;
 }
 
 fn margin(problem: &Problem, flown: &Flown, deadline_d: f64) -> Margin {
@@ -219,7 +143,7 @@ fn steered_flight(problem: &Problem, law: Law) -> (Flight, Columns) {
         let message = missed(&flown, target_radius);
         return (unsolved(Status::NotConverged, message, method), Columns::default());
     }
-    let mut flight = described(problem, flown.time, &flown.trajectory, method);
+    let mut flight = described_on_circles(problem, flown.time, &flown.trajectory, method);
     let [r, u, v] = flown.end;
     let (_, eccentricity) = polar::shape(r, u, v);
     flight.final_eccentricity = Some(eccentricity);
