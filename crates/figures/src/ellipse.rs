@@ -1,7 +1,8 @@
-//! Heliocentric ellipses seen from ecliptic north: whole orbits and the half-ellipse of an impulsive transfer.
+//! Heliocentric ellipses: whole orbits, bodies on them, and the half-ellipse of an impulsive transfer.
 
 use std::f64::consts::{PI, TAU};
 
+use orbits::kepler::Elements;
 use scenario::report::End;
 
 /// Most corners of one drawn ellipse.
@@ -13,27 +14,53 @@ pub(crate) fn corners(radius_px: f64) -> usize {
     ((PI * (5.0 * radius_px.abs()).sqrt()).ceil() as usize).clamp(48, MOST_CORNERS)
 }
 
-/// The orbit projected on the ecliptic, au, `count` segments from perihelion round in the direction of motion;
-/// the last point is the first. Rotations by argument of perihelion, inclination and node (3-1-3).
-pub(crate) fn orbit(end: &End, count: usize) -> Vec<[f64; 2]> {
+/// The elements of an end, au, with the mean anomaly at departure or zero where there is none.
+pub(crate) fn elements(end: &End) -> Elements {
+    Elements {
+        semi_major_axis: end.semi_major_axis_au,
+        eccentricity: end.eccentricity,
+        inclination_rad: end.inclination_deg.to_radians(),
+        node_rad: end.node_deg.to_radians(),
+        arg_peri_rad: end.arg_peri_deg.to_radians(),
+        mean_anomaly_rad: end.mean_anomaly_deg.unwrap_or(0.0).to_radians(),
+    }
+}
+
+/// The orbit in ecliptic axes, au, `count` segments from perihelion round in the direction of motion; the last
+/// point is the first.
+pub(crate) fn orbit(end: &End, count: usize) -> Vec<[f64; 3]> {
     let (a, e) = (end.semi_major_axis_au, end.eccentricity);
     let b = a * (1.0 - e * e).max(0.0).sqrt();
-    let (sin_peri, cos_peri) = end.arg_peri_deg.to_radians().sin_cos();
-    let (sin_node, cos_node) = end.node_deg.to_radians().sin_cos();
-    let cos_i = end.inclination_deg.to_radians().cos();
+    let (towards_perihelion, ahead) = elements(end).perifocal_axes();
     (0..=count)
         .map(|k| {
             let (sin, cos) = (TAU * k as f64 / count as f64).sin_cos();
-            let (p, q) = (a * (cos - e), b * sin);
-            let (u, v) = (cos_peri * p - sin_peri * q, sin_peri * p + cos_peri * q);
-            [cos_node * u - sin_node * cos_i * v, sin_node * u + cos_node * cos_i * v]
+            (towards_perihelion * (a * (cos - e)) + ahead * (b * sin)).into()
         })
         .collect()
 }
 
+/// The ascending and the descending node of an orbit, au.
+pub(crate) fn nodes(end: &End) -> [[f64; 3]; 2] {
+    let (e, cos_peri) = (end.eccentricity, end.arg_peri_deg.to_radians().cos());
+    let p = end.semi_major_axis_au * (1.0 - e * e);
+    let (sin, cos) = end.node_deg.to_radians().sin_cos();
+    // The perihelion lies the argument of perihelion ahead of the ascending node.
+    [p / (1.0 + e * cos_peri), -p / (1.0 - e * cos_peri)].map(|r| [r * cos, r * sin, 0.0])
+}
+
+/// Where the body of an end is, au, `t_d` days after departure; `None` where its place is not known.
+pub(crate) fn body(end: &End, t_d: f64) -> Option<[f64; 3]> {
+    end.mean_anomaly_deg.filter(|_| end.period_d > 0.0)?;
+    let at_departure = elements(end);
+    let mean_anomaly_rad = at_departure.mean_anomaly_rad + TAU * t_d / end.period_d;
+    let state = Elements { mean_anomaly_rad, ..at_departure }.state(1.0).ok()?;
+    Some(state.position.into())
+}
+
 /// The half-ellipse tangent to circles of radii `from_au` and `to_au`, au, counter-clockwise from the ecliptic
 /// longitude `start_rad`; empty when the radii are equal.
-pub(crate) fn half_ellipse(from_au: f64, to_au: f64, start_rad: f64, count: usize) -> Vec<[f64; 2]> {
+pub(crate) fn half_ellipse(from_au: f64, to_au: f64, start_rad: f64, count: usize) -> Vec<[f64; 3]> {
     if from_au == to_au || !(from_au > 0.0 && to_au > 0.0) {
         return Vec::new();
     }
@@ -45,7 +72,7 @@ pub(crate) fn half_ellipse(from_au: f64, to_au: f64, start_rad: f64, count: usiz
             let angle = PI * k as f64 / count as f64;
             let r = p / (1.0 + e * angle.cos());
             let (sin, cos) = (start_rad + angle).sin_cos();
-            [r * cos, r * sin]
+            [r * cos, r * sin, 0.0]
         })
         .collect()
 }
@@ -62,6 +89,8 @@ mod tests {
             inclination_deg: i,
             node_deg: node,
             arg_peri_deg: peri,
+            mean_anomaly_deg: None,
+            period_d: 0.0,
         }
     }
 
@@ -80,6 +109,38 @@ mod tests {
         let widest = points.iter().map(|p| p[0].abs()).fold(0.0, f64::max);
         let highest = points.iter().map(|p| p[1].abs()).fold(0.0, f64::max);
         assert!((widest - 1.0).abs() < 1e-9 && (highest - 0.5).abs() < 1e-9);
+    }
+
+    #[test]
+    fn an_orbit_is_highest_a_quarter_turn_after_its_ascending_node() {
+        let end = end(1.0, 0.0, 60.0, 20.0, 0.0);
+        let [ascending, descending] = nodes(&end);
+        let points = orbit(&end, 4);
+        assert!((0..3).all(|i| (points[0][i] - ascending[i]).abs() < 1e-12), "{points:?}");
+        assert!((0..3).all(|i| (points[2][i] - descending[i]).abs() < 1e-12), "{points:?}");
+        assert!((points[1][2] - 60.0_f64.to_radians().sin()).abs() < 1e-12);
+    }
+
+    #[test]
+    fn the_nodes_lie_on_the_ellipse() {
+        let end = end(1.3, 0.4, 25.0, 110.0, 70.0);
+        let points = orbit(&end, 4000);
+        for node in nodes(&end) {
+            let apart = |p: &[f64; 3]| (0..3).map(|i| (p[i] - node[i]).powi(2)).sum::<f64>().sqrt();
+            let nearest = points.iter().map(apart).fold(f64::INFINITY, f64::min);
+            // Neighbouring points are some 1.3 au * 2 pi / 4000 apart.
+            assert!(nearest < 2e-3, "{nearest}");
+        }
+    }
+
+    #[test]
+    fn a_body_is_at_perihelion_once_a_period_and_at_aphelion_half_way_between() {
+        let end = End { mean_anomaly_deg: Some(-90.0), period_d: 400.0, ..end(2.0, 0.4, 30.0, 10.0, 45.0) };
+        let distance = |t_d| body(&end, t_d).unwrap().iter().map(|x| x * x).sum::<f64>().sqrt();
+        assert!((distance(100.0) - 1.2).abs() < 1e-12 && (distance(500.0) - 1.2).abs() < 1e-12);
+        assert!((distance(300.0) - 2.8).abs() < 1e-12);
+        assert_eq!(body(&End { mean_anomaly_deg: None, ..end.clone() }, 0.0), None);
+        assert_eq!(body(&End { period_d: 0.0, ..end }, 0.0), None);
     }
 
     #[test]

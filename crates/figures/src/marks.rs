@@ -2,7 +2,7 @@
 
 use crate::shapes::{Point, Shape, Stroke};
 use crate::theme::Color;
-use crate::track::{Place, at_arc, at_time, heading};
+use crate::track::{Attitude, Place, angle, at_arc, at_time, heading};
 
 /// Days between ticks, finest first, with the words that say so: days, months, quarters, years, decades.
 const INTERVALS: [(f64, &str); 14] = [
@@ -61,14 +61,6 @@ pub(crate) fn ticks(places: &[Place], most: usize, gap_px: f64) -> Ticks {
     Ticks::default()
 }
 
-/// The angle by which the normal leans from the outward Sun line in the picture, rad, positive counter-clockwise.
-fn lean(place: &Place, sun: Point) -> Option<f64> {
-    let normal = place.normal?;
-    let (x, y) = (place.at.x - sun.x, sun.y - place.at.y);
-    let (cross, dot) = (x * normal[1] - y * normal[0], x * normal[0] + y * normal[1]);
-    (cross != 0.0 || dot != 0.0).then(|| cross.atan2(dot))
-}
-
 /// How many attitude bars, and how close.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct BarPlan {
@@ -78,17 +70,14 @@ pub(crate) struct BarPlan {
     pub(crate) spacing_px: f64,
     /// Least distance between any two, CSS pixels.
     pub(crate) gap_px: f64,
-    /// Where the Sun is drawn.
-    pub(crate) sun: Point,
 }
 
 /// Where the sail is drawn: evenly along the line, closer where its attitude changes fast, and on both sides of a
 /// jump; never closer than the plan allows, nor on one of the `kept_free` points, and a little aside of `ticks`.
 pub(crate) fn bars(places: &[Place], plan: BarPlan, kept_free: &[Point], ticks: &[Point]) -> Vec<Place> {
     let Some(total) = places.last().map(|place| place.arc_px) else { return Vec::new() };
-    let leans: Vec<Option<f64>> = places.iter().map(|place| lean(place, plan.sun)).collect();
-    let change = |i: usize| match (leans[i], leans[i + 1]) {
-        (Some(a), Some(b)) => angle_difference(a, b).abs(),
+    let change = |i: usize| match (places[i].attitude, places[i + 1].attitude) {
+        (Some(a), Some(b)) => angle(a.in_orbit, b.in_orbit),
         _ => 0.0,
     };
     let turned: f64 = (0..places.len().saturating_sub(1)).map(change).sum();
@@ -122,36 +111,53 @@ pub(crate) fn bars(places: &[Place], plan: BarPlan, kept_free: &[Point], ticks: 
         let Some(place) = moved.clone().find(clear).or_else(|| moved.clone().next()) else { continue };
         let free = chosen.iter().all(|other| other.at.distance(place.at) >= plan.gap_px)
             && kept_free.iter().all(|point| point.distance(place.at) >= plan.gap_px * 0.6);
-        if free && place.normal.is_some() && chosen.len() < plan.most {
+        if free && place.attitude.is_some() && chosen.len() < plan.most {
             chosen.push(place);
         }
     }
     chosen
 }
 
-fn angle_difference(a: f64, b: f64) -> f64 {
-    let turn = std::f64::consts::TAU;
-    (b - a + 1.5 * turn).rem_euclid(turn) - turn / 2.0
-}
-
-/// The sail seen from ecliptic north as a bar of the given half length, with its normal as an arrow on the side away
-/// from the Sun. Empty where the sail faces the reader. The first shape is the bar, from its left end to its right
-/// end as seen along the normal.
-pub(crate) fn sail_bar(place: &Place, half_px: f64, color: Color) -> Vec<Shape> {
-    let Some(normal) = place.normal else { return Vec::new() };
-    let in_plane = normal[0].hypot(normal[1]);
-    if in_plane < 0.1 {
-        return Vec::new();
-    }
-    let n = Point::new(normal[0] / in_plane, -normal[1] / in_plane);
+/// The sail as the reader sees it, a round plate of the given radius, with its normal as an arrow on the side away
+/// from the Sun. Seen from its edge it is a bar, the first shape, from its left end to its right end as seen along
+/// the normal; else the plate's outline is, and the arrow comes before it where it points away from the reader.
+pub(crate) fn sail_mark(place: &Place, radius_px: f64, color: Color, face: Color) -> Vec<Shape> {
+    let Some(Attitude { normal, .. }) = place.attitude else { return Vec::new() };
+    let in_picture = normal[0].hypot(normal[1]);
+    let n = if in_picture > 1e-6 {
+        Point::new(normal[0] / in_picture, -normal[1] / in_picture)
+    } else {
+        Point::new(0.0, -1.0)
+    };
     let left = Point::new(n.y, -n.x);
-    let bar = vec![place.at.shifted(left, half_px), place.at.shifted(left, -half_px)];
-    let tip = place.at.shifted(n, (half_px * 1.5 * in_plane).max(5.0));
-    vec![
-        Shape::Polyline { points: bar, stroke: Stroke::solid(color, 3.0) },
-        Shape::Polyline { points: vec![place.at, tip], stroke: Stroke::solid(color, 1.0) },
-        Shape::Polygon { points: arrow_head(tip, n, 5.0), color },
-    ]
+    let open_px = radius_px * normal[2].abs();
+    let length_px = radius_px * 1.5 * in_picture;
+    let mut arrow = Vec::new();
+    if length_px > 5.0 {
+        let tip = place.at.shifted(n, length_px);
+        arrow.push(Shape::Polyline { points: vec![place.at, tip], stroke: Stroke::solid(color, 1.0) });
+        arrow.push(Shape::Polygon { points: arrow_head(tip, n, 5.0), color });
+    }
+    if open_px < 1.5 {
+        let points = vec![place.at.shifted(left, radius_px), place.at.shifted(left, -radius_px)];
+        let bar = Shape::Polyline { points, stroke: Stroke::solid(color, 3.0) };
+        return std::iter::once(bar).chain(arrow).collect();
+    }
+    let outline: Vec<Point> = (0..=28)
+        .map(|k| {
+            let (sin, cos) = (std::f64::consts::TAU * f64::from(k) / 28.0).sin_cos();
+            place.at.shifted(left, radius_px * cos).shifted(n, open_px * sin)
+        })
+        .collect();
+    let plate = [
+        Shape::Polygon { points: outline.clone(), color: face },
+        Shape::Polyline { points: outline, stroke: Stroke::solid(color, 1.5) },
+    ];
+    if normal[2] < 0.0 {
+        arrow.into_iter().chain(plate).collect()
+    } else {
+        plate.into_iter().chain(arrow).collect()
+    }
 }
 
 /// A triangle that points along `direction`, its tip 60 % of its length ahead of `at`.
@@ -191,9 +197,10 @@ mod tests {
     fn straight(length: usize) -> Vec<Place> {
         let place = |k: usize, normal| Place {
             t_d: k as f64,
+            position_au: [k as f64, 0.0, 0.0],
             at: Point::new(k as f64, 0.0),
             arc_px: k as f64,
-            normal: Some(normal),
+            attitude: Some(Attitude { normal, in_orbit: normal }),
         };
         let half = length / 2;
         (0..=half)
@@ -213,7 +220,7 @@ mod tests {
 
     #[test]
     fn a_jump_is_shown_from_both_sides() {
-        let plan = BarPlan { most: 12, spacing_px: 80.0, gap_px: 26.0, sun: Point::new(-1000.0, 500.0) };
+        let plan = BarPlan { most: 12, spacing_px: 80.0, gap_px: 26.0 };
         let chosen = bars(&straight(400), plan, &[], &[]);
         let near = |from: f64, to: f64| chosen.iter().filter(|p| (from..to).contains(&p.at.x)).count();
         assert!(near(180.0, 200.0) == 1 && near(200.0, 220.0) == 1, "{chosen:?}");
@@ -224,13 +231,32 @@ mod tests {
 
     #[test]
     fn the_bar_is_square_to_the_normal_and_north_is_up() {
-        let place = Place { normal: Some([0.6, 0.8, 0.0]), ..straight(10)[0] };
-        let shapes = sail_bar(&place, 10.0, LIGHT.sail);
+        let shapes = sail_mark(&seen([0.6, 0.8, 0.0]), 10.0, LIGHT.sail, LIGHT.sheet);
         let Shape::Polyline { points: bar, .. } = &shapes[0] else { panic!("bar first") };
         let Shape::Polyline { points: arrow, .. } = &shapes[1] else { panic!("normal second") };
         let along = Point::new(bar[1].x - bar[0].x, bar[1].y - bar[0].y);
         let n = Point::new(arrow[1].x - arrow[0].x, arrow[1].y - arrow[0].y);
         assert!((along.x * n.x + along.y * n.y).abs() < 1e-9);
         assert!(n.x > 0.0 && n.y < 0.0, "a normal towards ecliptic +y points up in the picture: {n:?}");
+    }
+
+    fn seen(normal: [f64; 3]) -> Place {
+        Place { attitude: Some(Attitude { normal, in_orbit: normal }), ..straight(10)[0] }
+    }
+
+    #[test]
+    fn a_plate_is_as_wide_as_its_radius_says_and_as_open_as_its_normal_faces_the_reader() {
+        let shapes = sail_mark(&seen([0.8, 0.0, 0.6]), 10.0, LIGHT.sail, LIGHT.sheet);
+        let Shape::Polygon { points, .. } = &shapes[0] else { panic!("the face comes first: {shapes:?}") };
+        let reach = |of: fn(&Point) -> f64| points.iter().map(of).fold(0.0, f64::max);
+        assert!((reach(|p| p.y) - 10.0).abs() < 1e-9 && (reach(|p| p.x) - 6.0).abs() < 1e-9);
+    }
+
+    #[test]
+    fn a_normal_that_points_away_from_the_reader_is_behind_the_plate() {
+        let shapes = sail_mark(&seen([0.8, 0.0, -0.6]), 10.0, LIGHT.sail, LIGHT.sheet);
+        assert!(matches!(&shapes[0], Shape::Polyline { points, .. } if points.len() == 2), "{shapes:?}");
+        let facing = sail_mark(&seen([0.0, 0.0, 1.0]), 10.0, LIGHT.sail, LIGHT.sheet);
+        assert_eq!(facing.len(), 2, "only the plate: {facing:?}");
     }
 }

@@ -1,6 +1,6 @@
 //! The sail's way through the picture: a smooth line through the samples, with the sail's normal along it.
 
-use scenario::report::Columns;
+use scenario::report::{Columns, Report};
 
 use crate::shapes::Point;
 use crate::view::View;
@@ -16,106 +16,147 @@ const MOST_POINTS: usize = 60_000;
 pub(crate) struct Place {
     /// Time since departure, d.
     pub(crate) t_d: f64,
+    /// Where it is, ecliptic axes, au.
+    pub(crate) position_au: [f64; 3],
     /// Where it is drawn.
     pub(crate) at: Point,
     /// Length of the drawn line up to here, CSS pixels.
     pub(crate) arc_px: f64,
-    /// Unit normal of the sail on the side away from the Sun, ecliptic axes; `None` where the attitude is unknown.
-    pub(crate) normal: Option<[f64; 3]>,
+    /// How the sail points; `None` where that is unknown.
+    pub(crate) attitude: Option<Attitude>,
 }
 
-/// Unit normal in ecliptic axes at one sample.
+/// The sail's unit normal on the side away from the Sun, in two sets of axes.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct Attitude {
+    /// To the right, up and towards the reader in the picture; ecliptic axes before there is a picture.
+    pub(crate) normal: [f64; 3],
+    /// Away from the Sun, along the motion, along the orbit normal.
+    pub(crate) in_orbit: [f64; 3],
+}
+
+impl Attitude {
+    fn between(from: Option<Attitude>, to: Option<Attitude>, s: f64) -> Option<Attitude> {
+        let (from, to) = (from?, to?);
+        let mix = |a: [f64; 3], b: [f64; 3]| unit(std::array::from_fn(|i| a[i] + s * (b[i] - a[i])));
+        Some(Attitude {
+            normal: mix(from.normal, to.normal)?,
+            in_orbit: mix(from.in_orbit, to.in_orbit)?,
+        })
+    }
+}
+
+/// The attitude at one sample, its normal in ecliptic axes.
 ///
-/// `cone_deg` turns the outward radial direction towards the direction of motion: positive pushes forward. Where
-/// the flight is spatial the cone angle is positive and `clock_deg` turns it about the Sun line, from the direction
-/// of motion towards the orbit normal. Flights without an orbit normal (no velocity) move counter-clockwise.
-pub(crate) fn normal(columns: &Columns, row: usize, spatial: bool) -> Option<[f64; 3]> {
+/// `cone_deg` turns the outward radial direction towards the direction of motion: positive pushes forward. Where it
+/// is positive, `clock_deg` turns it about the Sun line, from the direction of motion towards the orbit normal.
+/// Flights without an orbit normal (no velocity) move counter-clockwise.
+pub(crate) fn attitude(columns: &Columns, row: usize) -> Option<Attitude> {
     let value = |column: &Vec<f64>| column.get(row).copied().unwrap_or(f64::NAN);
     let cone = value(&columns.cone_deg).to_radians();
-    let r = [value(&columns.x_au), value(&columns.y_au), value(&columns.z_au)];
-    let v = [value(&columns.vx_km_s), value(&columns.vy_km_s), value(&columns.vz_km_s)];
-    let radial = unit(r)?;
-    let pole = if spatial { unit(cross(r, v)).unwrap_or([0.0, 0.0, 1.0]) } else { [0.0, 0.0, 1.0] };
-    let along = unit(cross(pole, radial))?;
     let clock = value(&columns.clock_deg).to_radians();
-    let (sin_clock, cos_clock) =
-        if spatial && cone >= 0.0 && clock.is_finite() { clock.sin_cos() } else { (0.0, 1.0) };
+    let radial = unit(position(columns, row))?;
+    let pole = unit(cross(radial, velocity(columns, row))).unwrap_or([0.0, 0.0, 1.0]);
+    let along = unit(cross(pole, radial))?;
     if !cone.is_finite() {
         return None;
     }
+    let (sin_clock, cos_clock) =
+        if cone >= 0.0 && clock.is_finite() { clock.sin_cos() } else { (0.0, 1.0) };
     let (sin, cos) = cone.sin_cos();
-    Some(std::array::from_fn(|i| cos * radial[i] + sin * (cos_clock * along[i] + sin_clock * pole[i])))
+    let in_orbit = [cos, sin * cos_clock, sin * sin_clock];
+    let normal =
+        std::array::from_fn(|i| in_orbit[0] * radial[i] + in_orbit[1] * along[i] + in_orbit[2] * pole[i]);
+    Some(Attitude { normal, in_orbit })
 }
 
-/// Whether the flight leaves the ecliptic plane anywhere.
-pub(crate) fn is_spatial(columns: &Columns) -> bool {
-    columns.z_au.iter().any(|z| z.abs() > 1e-12)
+/// Whether the flight is one in space: it leaves the ecliptic, an end is no circle in it, or it has a date.
+pub(crate) fn is_spatial(report: &Report, columns: &Columns) -> bool {
+    let ends = [&report.ends.from, &report.ends.to];
+    report.flight.depart.is_some()
+        || ends.iter().any(|end| end.eccentricity != 0.0 || end.inclination_deg != 0.0)
+        || columns.z_au.iter().any(|z| z.abs() > 1e-12)
+}
+
+/// Position at a sample, au. Flights without heights are flown in the ecliptic.
+pub(crate) fn position(columns: &Columns, row: usize) -> [f64; 3] {
+    [columns.x_au[row], columns.y_au[row], columns.z_au.get(row).copied().unwrap_or(0.0)]
+}
+
+/// Velocity at a sample, km/s; NaN where there is none.
+fn velocity(columns: &Columns, row: usize) -> [f64; 3] {
+    [&columns.vx_km_s, &columns.vy_km_s, &columns.vz_km_s]
+        .map(|column| column.get(row).copied().unwrap_or(f64::NAN))
+}
+
+/// Distance from the Sun at every sample, au.
+pub(crate) fn distances(columns: &Columns) -> impl Iterator<Item = f64> + '_ {
+    (0..columns.t_d.len()).map(|row| {
+        let [x, y, z] = position(columns, row);
+        x.hypot(y).hypot(z)
+    })
 }
 
 /// The whole way in a view. Between samples the line follows the cubic through both positions and velocities, in
 /// pieces short enough to look smooth at this scale; where samples share a time (a jump of attitude) both stay.
 pub(crate) fn track(columns: &Columns, view: &View) -> Vec<Place> {
-    let spatial = is_spatial(columns);
     let near = view.frame.grown(view.frame.width.max(view.frame.height));
     let mut places: Vec<Place> = Vec::with_capacity(columns.t_d.len());
     let mut arc_px = 0.0;
-    let mut push = |places: &mut Vec<Place>, t_d: f64, at: Point, normal: Option<[f64; 3]>| {
+    let mut push = |places: &mut Vec<Place>, t_d: f64, position_au: [f64; 3], attitude: Option<Attitude>| {
+        let at = view.px(position_au);
         arc_px += places.last().map_or(0.0, |last: &Place| last.at.distance(at));
-        places.push(Place { t_d, at, arc_px, normal });
+        let attitude = attitude.map(|a| Attitude { normal: view.seen(a.normal), ..a });
+        places.push(Place { t_d, position_au, at, arc_px, attitude });
     };
-    let position = |row: usize| [columns.x_au[row], columns.y_au[row]];
+    let finite = |position: [f64; 3]| position.iter().all(|x| x.is_finite());
     for row in 0..columns.t_d.len() {
-        let here = position(row);
-        if !(here[0].is_finite() && here[1].is_finite()) {
+        let here = position(columns, row);
+        if !finite(here) {
             continue;
         }
-        let normal_here = normal(columns, row, spatial);
-        if row > 0 && position(row - 1).iter().all(|x| x.is_finite()) {
+        let attitude_here = attitude(columns, row);
+        if row > 0 && finite(position(columns, row - 1)) {
+            let before = position(columns, row - 1);
             let span_d = columns.t_d[row] - columns.t_d[row - 1];
-            let (a, b) = (view.px(position(row - 1)), view.px(here));
-            let seen = near.contains(a) || near.contains(b);
-            let pieces = if seen && span_d > 0.0 { pieces(columns, row, a.distance(b)) } else { 1 };
+            let seen = near.contains(view.px(before)) || near.contains(view.px(here));
+            let chord: [f64; 3] = std::array::from_fn(|i| here[i] - before[i]);
+            let chord_px = norm(chord) * view.px_per_au;
+            let pieces = if seen && span_d > 0.0 { pieces(columns, row, chord_px) } else { 1 };
             let pieces = pieces.min(1 + MOST_POINTS.saturating_sub(places.len()));
-            let normal_before = normal(columns, row - 1, spatial);
+            let attitude_before = attitude(columns, row - 1);
             for k in 1..pieces {
                 let s = k as f64 / pieces as f64;
-                let between = hermite(columns, row, span_d, s);
-                let turned = match (normal_before, normal_here) {
-                    (Some(n0), Some(n1)) => unit(std::array::from_fn(|i| n0[i] + s * (n1[i] - n0[i]))),
-                    _ => None,
-                };
-                push(&mut places, columns.t_d[row - 1] + s * span_d, view.px(between), turned);
+                let turned = Attitude::between(attitude_before, attitude_here, s);
+                push(&mut places, columns.t_d[row - 1] + s * span_d, hermite(columns, row, span_d, s), turned);
             }
         }
-        push(&mut places, columns.t_d[row], view.px(here), normal_here);
+        push(&mut places, columns.t_d[row], here, attitude_here);
     }
     places
 }
 
-/// Pieces for the step that ends at `row`, so that each bends by less than a tenth of a pixel: a chord of length c
-/// that turns by q has the sagitta c q / 8, and n pieces make that n^2 times smaller.
+/// Pieces for the step that ends at `row`, so that each bends by less than a tenth of a pixel from any side: a chord
+/// of length c that turns by q has the sagitta c q / 8, and n pieces make that n^2 times smaller.
 fn pieces(columns: &Columns, row: usize, chord_px: f64) -> usize {
-    let direction = |row: usize| {
-        let (vx, vy) = (columns.vx_km_s.get(row)?, columns.vy_km_s.get(row)?);
-        (vx.is_finite() && vy.is_finite()).then(|| vy.atan2(*vx))
-    };
-    let (Some(before), Some(after)) = (direction(row - 1), direction(row)) else { return 1 };
-    let mut turn = (after - before).abs();
-    if turn > std::f64::consts::PI {
-        turn = std::f64::consts::TAU - turn;
-    }
-    ((chord_px * turn / 0.8).sqrt().ceil() as usize).clamp(1, 64)
+    let (before, after) = (velocity(columns, row - 1), velocity(columns, row));
+    let turn = angle(before, after);
+    if turn.is_finite() { ((chord_px * turn / 0.8).sqrt().ceil() as usize).clamp(1, 64) } else { 1 }
 }
 
 /// Position at the share `s` of the step that ends at `row`, au: cubic Hermite interpolation.
-fn hermite(columns: &Columns, row: usize, span_d: f64, s: f64) -> [f64; 2] {
+fn hermite(columns: &Columns, row: usize, span_d: f64, s: f64) -> [f64; 3] {
     let (s2, s3) = (s * s, s * s * s);
     let (h00, h10) = (2.0 * s3 - 3.0 * s2 + 1.0, s3 - 2.0 * s2 + s);
     let (h01, h11) = (3.0 * s2 - 2.0 * s3, s3 - s2);
     let scale = span_d * AU_D_PER_KM_S;
-    let axis =
-        |x: &[f64], v: &[f64]| h00 * x[row - 1] + h01 * x[row] + scale * (h10 * v[row - 1] + h11 * v[row]);
-    [axis(&columns.x_au, &columns.vx_km_s), axis(&columns.y_au, &columns.vy_km_s)]
+    let (x0, x1) = (position(columns, row - 1), position(columns, row));
+    let (v0, v1) = (velocity(columns, row - 1), velocity(columns, row));
+    std::array::from_fn(|i| {
+        let speed = h10 * v0[i] + h11 * v1[i];
+        // Without a velocity along this axis the line is straight.
+        if speed.is_finite() { h00 * x0[i] + h01 * x1[i] + scale * speed } else { x0[i] + s * (x1[i] - x0[i]) }
+    })
 }
 
 /// The place at a time, linear between neighbours. `None` outside the flight.
@@ -139,15 +180,12 @@ fn between(places: &[Place], after: usize, key: impl Fn(&Place) -> f64, wanted: 
     let width = key(b) - key(a);
     let s = if width > 0.0 { (wanted - key(a)) / width } else { 1.0 };
     let mix = |p: f64, q: f64| p + s * (q - p);
-    let normal = match (a.normal, b.normal) {
-        (Some(n), Some(m)) => unit(std::array::from_fn(|i| mix(n[i], m[i]))),
-        _ => None,
-    };
     Some(Place {
         t_d: mix(a.t_d, b.t_d),
+        position_au: std::array::from_fn(|i| mix(a.position_au[i], b.position_au[i])),
         at: Point::new(mix(a.at.x, b.at.x), mix(a.at.y, b.at.y)),
         arc_px: mix(a.arc_px, b.arc_px),
-        normal,
+        attitude: Attitude::between(a.attitude, b.attitude, s),
     })
 }
 
@@ -163,14 +201,24 @@ fn cross(a: [f64; 3], b: [f64; 3]) -> [f64; 3] {
     [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]]
 }
 
+/// Angle between two vectors, rad, exact for small ones too.
+pub(crate) fn angle(a: [f64; 3], b: [f64; 3]) -> f64 {
+    norm(cross(a, b)).atan2(a[0] * b[0] + a[1] * b[1] + a[2] * b[2])
+}
+
+fn norm(a: [f64; 3]) -> f64 {
+    a.iter().map(|x| x * x).sum::<f64>().sqrt()
+}
+
 fn unit(a: [f64; 3]) -> Option<[f64; 3]> {
-    let length = a.iter().map(|x| x * x).sum::<f64>().sqrt();
+    let length = norm(a);
     (length.is_finite() && length > 0.0).then(|| a.map(|x| x / length))
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::view::Aspect;
 
     fn one_sample(cone_deg: f64, clock_deg: f64, z_au: f64) -> Columns {
         Columns {
@@ -190,22 +238,29 @@ mod tests {
 
     #[test]
     fn a_positive_cone_angle_turns_the_normal_forward() {
-        let n = normal(&one_sample(30.0, f64::NAN, 0.0), 0, false).unwrap();
+        let n = attitude(&one_sample(30.0, f64::NAN, 0.0), 0).unwrap().normal;
         assert!((n[0] + 0.5).abs() < 1e-12 && (n[1] - 0.75_f64.sqrt()).abs() < 1e-12, "{n:?}");
     }
 
     #[test]
     fn a_negative_cone_angle_turns_it_backward_whatever_the_clock_says() {
         for clock in [f64::NAN, 180.0] {
-            let n = normal(&one_sample(-30.0, clock, 0.0), 0, false).unwrap();
+            let n = attitude(&one_sample(-30.0, clock, 0.0), 0).unwrap().normal;
             assert!((n[0] - 0.5).abs() < 1e-12, "{n:?}");
         }
     }
 
     #[test]
     fn a_clock_angle_of_a_right_angle_lifts_the_normal_out_of_the_orbit() {
-        let n = normal(&one_sample(40.0, 90.0, 0.0), 0, true).unwrap();
+        let n = attitude(&one_sample(40.0, 90.0, 0.0), 0).unwrap().normal;
         assert!((n[2] - 40.0_f64.to_radians().sin()).abs() < 1e-12 && n[0].abs() < 1e-12, "{n:?}");
+    }
+
+    #[test]
+    fn a_positive_cone_angle_at_clock_180_turns_the_normal_backward() {
+        let n = attitude(&one_sample(30.0, 180.0, 0.0), 0).unwrap();
+        assert!((n.normal[0] - 0.5).abs() < 1e-12, "{n:?}");
+        assert!((n.in_orbit[1] + 0.5).abs() < 1e-12, "{n:?}");
     }
 
     #[test]
@@ -227,7 +282,9 @@ mod tests {
             columns.clock_deg.push(f64::NAN);
         }
         let frame = crate::geometry::Rect { left: 0.0, top: 0.0, width: 1000.0, height: 1000.0 };
-        let view = View { frame, px_per_au: 480.0, centre_au: [0.0, 0.0] };
+        let corners = [[-1.0, -1.0, 0.0], [1.0, 1.0, 0.0]];
+        let fitted = View::fitting(&corners, Aspect::default(), frame, 0.0);
+        let view = View { px_per_au: 480.0, ..fitted };
         let places = track(&columns, &view);
         let sun = frame.centre();
         // Cubic Hermite error is (step angle)^4 / 384 of the radius: 1.2e-5, far below the tenth of a pixel allowed.

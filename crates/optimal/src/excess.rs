@@ -117,7 +117,11 @@ impl<const D: usize> End<D> {
 
     /// How far the excess is from being of minimum time: along the primer and whole, or anything with the primer zero.
     pub fn misfit(&self) -> f64 {
-        if self.allowance > 0.0 { length(&left_over(self.relative, self.primer, self.allowance)) } else { 0.0 }
+        if self.allowance > 0.0 {
+            length(&left_over(self.relative, self.primer, self.allowance))
+        } else {
+            0.0
+        }
     }
 }
 

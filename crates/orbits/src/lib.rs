@@ -20,4 +20,5 @@ pub mod lambert;
 pub mod planets;
 pub mod rocket;
 pub mod two_body;
+pub mod two_impulse;
 pub mod units;

@@ -1,9 +1,12 @@
 //! The two ends of a flight as the solvers see them: circles or ellipses, and the bodies on them.
 
+use std::f64::consts::TAU;
+
 use orbits::ephemeris::Traveller;
 use orbits::epochs;
 use orbits::impulsive::Body;
 use orbits::kepler::Elements;
+use orbits::units;
 
 use crate::date::Date;
 use crate::report::End;
@@ -35,6 +38,8 @@ fn spatial_end(place: &Place, depart_j2000_d: Option<f64>) -> End {
         inclination_deg: orbit.inclination_rad.to_degrees(),
         node_deg: orbit.node_rad.to_degrees(),
         arg_peri_deg: orbit.arg_peri_rad.to_degrees(),
+        mean_anomaly_deg: depart_j2000_d.map(|_| orbit.mean_anomaly_rad.to_degrees()),
+        period_d: period_d(orbit.semi_major_axis),
     }
 }
 
@@ -46,7 +51,14 @@ fn circle_end(place: &Place) -> End {
         inclination_deg: 0.0,
         node_deg: 0.0,
         arg_peri_deg: 0.0,
+        mean_anomaly_deg: None,
+        period_d: period_d(circle_au(place)),
     }
+}
+
+/// Period of a heliocentric orbit, d.
+fn period_d(semi_major_axis_au: f64) -> f64 {
+    units::days(TAU * semi_major_axis_au.powf(1.5))
 }
 
 /// The body that moves there, in space.

@@ -78,6 +78,12 @@ pub struct End {
     pub node_deg: f64,
     /// Argument of perihelion, deg.
     pub arg_peri_deg: f64,
+    /// Mean anomaly of the body at departure, deg; null where the flight has no date or no body is meant.
+    #[serde(default)]
+    pub mean_anomaly_deg: Option<f64>,
+    /// Period of the orbit, d: the body moves by 360 deg of mean anomaly in this time.
+    #[serde(default)]
+    pub period_d: f64,
 }
 
 /// The sailcraft.

@@ -63,7 +63,8 @@ pub fn check_link(text: &str) -> Result<JsValue, Error> {
 /// Wrong or refused input: `detail` is `{kind: "input", errors: [{key, value, rule}]}`.
 #[wasm_bindgen]
 pub fn solve(link: &str) -> Result<JsValue, Error> {
-    let answer = link::decode(link).and_then(|scenario| scenario::run::run(&scenario)).map_err(input_error)?;
+    let answer =
+        link::decode(link).and_then(|scenario| scenario::run::run(&scenario)).map_err(input_error)?;
     let solved = Object::new();
     set(&solved, "report", &to_js(&answer.report)?)?;
     set(&solved, "columns", &Float64Array::from(answer.columns.packed().as_slice()))?;
@@ -157,8 +158,8 @@ impl Figures {
         // Setting the size also clears what was drawn before.
         canvas.set_width((options.width * options.scale).round() as u32);
         canvas.set_height((options.height * options.scale).round() as u32);
-        let mut backend =
-            CanvasBackend::with_canvas_object(canvas).ok_or_else(|| Error::new("this canvas cannot be drawn on"))?;
+        let mut backend = CanvasBackend::with_canvas_object(canvas)
+            .ok_or_else(|| Error::new("this canvas cannot be drawn on"))?;
         figures::paint(&figure, options.scale, &mut backend).map_err(plain_error)?;
         to_js(&figure.map)
     }

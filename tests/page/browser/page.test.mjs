@@ -92,6 +92,19 @@ for (const name of ["chromium", "firefox"])
       await other.close();
     });
 
+    visit("the link to share is copied, or laid out to be copied by hand", {}, async (page) => {
+      await page.fill("to", "venus");
+      await sentenceIs(page, sentenceOf("to=venus"));
+      await page.click("#copy-link");
+      await page.until(() => document.querySelector(".said").textContent !== "");
+      const field = await page.evaluate(() => {
+        const { hidden, value } = document.querySelector("#tools input");
+        return hidden ? null : value;
+      });
+      if (field === null) assert.equal(await page.text(".said"), "Link copied.");
+      else assert.match(field, /^file:.*#v=1&to=venus$/);
+    });
+
     visit("wrong input is marked at its field, kept as typed, and the last good result stays as stale", {}, async (page) => {
       const good = await sentence(page);
       for (const typed of ["", "abc", "0", "-3", "NaN", "Infinity", "1e308"]) {
@@ -131,8 +144,10 @@ for (const name of ["chromium", "firefox"])
 
     visit("a link that asks for more than is solved says so by key, and is mended from there", { url: `${FILE}#film=aluminised` }, async (page) => {
       assert.match(await page.text("#notice"), /film.*ideal/s);
+      assert.equal(await page.evaluate(() => document.getElementById("orbit").checkVisibility()), false);
       await page.evaluate(() => [...document.querySelectorAll("#notice button")].find((button) => button.textContent === "Remove film").click());
       await sentenceIs(page, sentenceOf(""));
+      await page.until(() => document.querySelector("#orbit canvas").width > 400);
     });
 
     visit("a new fragment in the address opens its flight", {}, async (page) => {

@@ -1,12 +1,14 @@
 """Writes spatial_times.json: flights between real orbits and flights with excess speed, direct solution and shooting.
 
-The table is written again after every row: a run that is cut short leaves what it had.
+The table is written again after every row, and a row of the same case is replaced: a run that is cut short leaves what
+it had, and `make_spatial_times.py orbit mercury` redoes only the rows of that kind and target.
 """
 
 import datetime
 import json
 import math
 import pathlib
+import sys
 
 import numpy as np
 
@@ -48,36 +50,42 @@ def local_solutions(found):
 def search_orbit(problem):
     """Departure held in windows all round the orbit, coplanar flights of three accelerations as guesses; then freed.
 
+    An optimum inside its window is a free one already; of those at an edge the three fastest are set free.
     Returns (free local optima by name, guesses tried, map of the windows).
     """
-    found, tried, windows = {}, 0, []
+    found, tried, windows, edges = {}, 0, [], []
     for factor, count in ((1.0, 12), (0.75, 6), (1.4, 6)):
         plane = plane_direct.best_flight(factor * problem.beta, TARGETS_AU[problem.target])
         mesh = np.linspace(0, 1, max(30, math.ceil(plane["angle"] / (2 * math.pi) * 16)) + 1)
-        program = direct.Transcription(problem, mesh, 6.0)
+        program = direct.Transcription(problem, mesh, 5.0)
         for name, guess in guesses.orbit_guesses(problem, plane, count, 1.2 * math.pi / count):
             tried += 1
             held = program.solve(guess)
             if held is None:
                 continue
-            start = held["states"][:, 0]
+            start, name = held["states"][:, 0], f"{factor} x acceleration, {name}"
             windows.append(
                 {
-                    "guess": f"{factor} x acceleration, {name}",
+                    "guess": name,
                     "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
                     "time_d": round(held["t_f"] * TIME_UNIT_D, 3),
                     "at_window_edge": held["at_window_edge"],
                 }
             )
-            freed = held if not held["at_window_edge"] else program.solve(direct.as_guess(held))
-            if freed is not None:
-                found[windows[-1]["guess"]] = freed
+            if held["at_window_edge"]:
+                edges.append((held["t_f"], name, held, program))
+            else:
+                found[name] = held
+    for _, name, held, program in sorted(edges, key=lambda e: e[0])[:3]:
+        freed = program.solve(direct.as_guess(held))
+        if freed is not None:
+            found[name] = freed
     return found, tried, windows
 
 
 def search_rendezvous(problem, t_plane):
     """Local optima by name from plain curves to many arrival dates, and the number of guesses tried."""
-    program = direct.Transcription(problem, np.linspace(0, 1, 31), 3.0)
+    program = direct.Transcription(problem, np.linspace(0, 1, 31), 2.5)
     found, tried = {}, 0
     for name, guess in guesses.rendezvous_guesses(problem, t_plane):
         tried += 1
@@ -179,40 +187,55 @@ class Table:
             "tolerance": 1e-6,
             "tolerance_reason": "both methods agree to better than 1e-8; best of the local optima that the guesses found",
         }
-        self.content["cases"] = []
+        self.content["cases"] = json.loads(OUT.read_text())["cases"] if OUT.exists() else []
 
     def add(self, row):
-        self.content["cases"].append(row)
+        key = ("kind", "target", "ac_mm_s2", "depart", "vinf_km_s", "vinf_arrive_km_s")
+        rows = [r for r in self.content["cases"] if any(r.get(k) != row.get(k) for k in key)] + [row]
+        order = ["coplanar_excess", "orbit", "rendezvous"]
+        rows.sort(key=lambda r: (order.index(r["kind"]), r["target"], -r["ac_mm_s2"], r["vinf_km_s"],
+                                 r.get("vinf_arrive_km_s", 0.0), r.get("depart") or ""))
+        self.content["cases"] = rows
         OUT.write_text(json.dumps(self.content, indent=1) + "\n")
         when = row.get("depart") or ""
         print(f"{row['kind']} {row['target']} {row['ac_mm_s2']} {when} {row['time_d_collocation']} "
               f"{row['relative_difference']:+.0e} {row.get('local_optima', '')}", flush=True)
 
 
-def main():
+def rendezvous_problems(target, beta):
+    """Six departure dates over one synodic period; for Mars two more with excess allowed at one end."""
+    period = elements.synodic_period_d("earth", target)
+    problems = []
+    for k in range(6):
+        date = FIRST_DATE + datetime.timedelta(days=round(k * period / 6))
+        problems.append(direct.Problem(target, beta, days_since_j2000(date)))
+    if target == "mars":
+        problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_km_s=2.0))
+        problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_arrive_km_s=1.0))
+    return problems
+
+
+def main(kinds, targets):
     table = Table()
-    for ac, vinf in EXCESS_CASES:
-        table.add(excess_row(ac, vinf))
-    for target, ac in ORBIT_CASES:
-        problem = direct.Problem(target, ac / SUN_GRAVITY_1AU_MM_S2)
-        found, tried, windows = search_orbit(problem)
-        row = spatial_row(problem, found, tried)
-        row["departure_windows"] = windows
-        table.add(row)
-    beta = 1.0 / SUN_GRAVITY_1AU_MM_S2
-    for target in ("mars", "venus"):
-        t_plane = plane_direct.best_flight(beta, TARGETS_AU[target])["t_f"]
-        period = elements.synodic_period_d("earth", target)
-        problems = []
-        for k in range(6):
-            date = FIRST_DATE + datetime.timedelta(days=round(k * period / 6))
-            problems.append(direct.Problem(target, beta, days_since_j2000(date)))
-        if target == "mars":
-            problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_km_s=2.0))
-            problems.append(direct.Problem(target, beta, days_since_j2000(FIRST_DATE), vinf_arrive_km_s=1.0))
-        for problem in problems:
-            table.add(spatial_row(problem, *search_rendezvous(problem, t_plane)))
+    if "coplanar_excess" in kinds:
+        for ac, vinf in EXCESS_CASES:
+            table.add(excess_row(ac, vinf))
+    if "rendezvous" in kinds:
+        beta = 1.0 / SUN_GRAVITY_1AU_MM_S2
+        for target in [t for t in ("mars", "venus") if t in targets]:
+            t_plane = plane_direct.best_flight(beta, TARGETS_AU[target])["t_f"]
+            for problem in rendezvous_problems(target, beta):
+                table.add(spatial_row(problem, *search_rendezvous(problem, t_plane)))
+    if "orbit" in kinds:
+        for target, ac in [c for c in ORBIT_CASES if c[0] in targets]:
+            problem = direct.Problem(target, ac / SUN_GRAVITY_1AU_MM_S2)
+            found, tried, windows = search_orbit(problem)
+            row = spatial_row(problem, found, tried)
+            row["departure_windows"] = windows
+            table.add(row)
 
 
 if __name__ == "__main__":
-    main()
+    words = sys.argv[1:]
+    all_kinds, all_targets = ["coplanar_excess", "rendezvous", "orbit"], ["mars", "venus", "mercury"]
+    main([k for k in all_kinds if k in words] or all_kinds, [t for t in all_targets if t in words] or all_targets)

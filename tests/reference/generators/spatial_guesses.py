@@ -78,7 +78,7 @@ def orbit_guesses(problem, plane, longitudes, window):
         )
 
 
-def rendezvous_guesses(problem, t_plane, stretches=(0.8, 1.0, 1.25, 1.5, 1.8, 2.2, 2.7), bulges=(0.0, 0.25, -0.2)):
+def rendezvous_guesses(problem, t_plane, stretches=(0.9, 1.2, 1.6, 2.1, 2.7), bulges=(0.0, 0.25, -0.2)):
     """Arrival dates over more than a synodic period; for each the turns that meet the target near circular pace."""
     first = elements.state_at("earth", problem.depart_d)[:3]
     for stretch in stretches:

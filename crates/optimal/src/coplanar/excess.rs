@@ -105,7 +105,7 @@ impl Shooting {
         let rates = flow.rates(Mode::default(), &end.map(|y| y.v));
         let along: Augmented<Dual<1>> = std::array::from_fn(|i| Dual { v: end[i].v, d: [rates[i]] });
         let (value, slope) = (self.mismatch(&end, share), self.mismatch(&along, Dual::constant(share.v)));
-        let jacobian = SMatrix::from_fn(|row, column| match column {
+        let jacobian = SMatrix::<f64, 3, 4>::from_fn(|row, column| match column {
             0 | 1 => value[row].d[column],
             2 => slope[row].d[0],
             _ => value[row].d[2],
@@ -174,12 +174,7 @@ const PACE: Pace = Pace { first: 0.34, largest: 0.5, smallest: 2e-3, easy_passes
 const STRIDE: Stride =
     Stride { first: 3e-3, largest: 0.3, smallest: 1e-7, accept: 1e-3, wanted_correction: 0.01, budget: 600 };
 
-fn refine(
-    shooting: &Shooting,
-    start: Unknowns,
-    residual: f64,
-    passes: usize,
-) -> Option<Solved<Unknowns>> {
+fn refine(shooting: &Shooting, start: Unknowns, residual: f64, passes: usize) -> Option<Solved<Unknowns>> {
     newton(shooting, start, &Goal { residual, passes })
 }
 
@@ -213,7 +208,8 @@ pub fn solve(problem: &Problem) -> Option<Extremum> {
 
 /// From where growing got stuck to the whole allowance.
 fn onward(shooting: &Shooting, stuck: &Lost<Unknowns>, goal: f64) -> Option<(Unknowns, Route)> {
-    let leapt = refine(shooting, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
+    let leapt =
+        refine(shooting, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
     if let Some(leapt) = leapt {
         return Some((leapt.point, Route::Leapt));
     }

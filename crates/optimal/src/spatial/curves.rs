@@ -33,8 +33,8 @@ pub struct Setting {
 }
 
 /// One unit of a time column, in units of the target's (and start's) mean time scale.
-const TIME_COLUMN: f64 = 3.0;
-const SHAPE_COLUMN: f64 = 0.3;
+pub(super) const TIME_COLUMN: f64 = 3.0;
+pub(super) const SHAPE_COLUMN: f64 = 0.3;
 pub(super) const PHASE_COLUMN: f64 = 2.0;
 
 /// Rows of position and velocity mismatch, in parts of the target orbit's size and speed.
@@ -43,7 +43,13 @@ pub(super) fn row_scales(target_axis: f64) -> [f64; 6] {
     [length, length, length, speed, speed, speed]
 }
 
-pub(super) fn moved_point(point: &Point, costate: Vector6<f64>, time: f64, arrival: f64, parameter: f64) -> Point {
+pub(super) fn moved_point(
+    point: &Point,
+    costate: Vector6<f64>,
+    time: f64,
+    arrival: f64,
+    parameter: f64,
+) -> Point {
     Point {
         costate: (point.costate + costate).normalize(),
         time: point.time + time,
@@ -52,7 +58,7 @@ pub(super) fn moved_point(point: &Point, costate: Vector6<f64>, time: f64, arriv
     }
 }
 
-fn sphere_row<const M: usize>(point: &Point) -> SVector<f64, M> {
+pub(super) fn sphere_row<const M: usize>(point: &Point) -> SVector<f64, M> {
     let mut row = SVector::<f64, M>::zeros();
     row.fixed_rows_mut::<6>(0).copy_from(&point.costate);
     row
@@ -100,7 +106,7 @@ impl OpenArrival<'_> {
 }
 
 /// Difference step for derivatives of closed forms that only guide a Newton step.
-const SHIFT: f64 = 1e-6;
+pub(super) const SHIFT: f64 = 1e-6;
 
 /// Arrival point free, departure at the reference instant, orbits growing from coplanar circles (parameter 0) to
 /// themselves (1).

@@ -47,6 +47,12 @@ impl Ends {
         Elements { semi_major_axis: axis, ..shaped(&self.to, shape) }
     }
 
+    /// The pair of orbits at `shape`, as orbits in their own right.
+    pub fn at_shape(&self, shape: f64) -> Ends {
+        let to = self.target_orbit(shape);
+        Ends { from: shaped(&self.from, shape), to, round_target: to.semi_major_axis }
+    }
+
     /// Mean longitude of the departure body at the reference instant.
     pub fn departure_longitude(&self) -> f64 {
         longitude(&self.from)

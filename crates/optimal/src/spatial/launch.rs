@@ -71,9 +71,14 @@ impl Care {
 
 /// Grows the orbits from circles to themselves, departure at the reference instant, arrival point free.
 pub fn grown(setting: &Setting, care: &Care) -> Option<Point> {
+    grown_to(setting, care, 1.0)
+}
+
+/// Grows the orbits from circles to `shape`, departure at the reference instant, arrival point free.
+pub(super) fn grown_to(setting: &Setting, care: &Care, shape: f64) -> Option<Point> {
     let start = coplanar_point(setting)?;
     let setting = Setting { tolerance: care.tolerance, ..*setting };
-    let goal = Goal { parameter: Growing::scaled(1.0), sign: 1.0 };
+    let goal = Goal { parameter: Growing::scaled(shape), sign: 1.0 };
     let followed = follow(&Growing(&setting), start, &goal, &care.stride(), &mut |_| true);
     (followed.ended == Ended::Reached).then_some(followed.point)
 }

@@ -3,6 +3,7 @@
 pub mod curves;
 pub mod ends;
 pub mod extremal;
+pub mod growing_open;
 pub mod launch;
 pub mod orbit_match;
 pub mod polish;

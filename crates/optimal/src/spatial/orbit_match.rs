@@ -3,9 +3,10 @@
 use nalgebra::Vector6;
 use numerics::arclength::{Ended, Goal, follow};
 
-use super::curves::{Leaving, Point, Setting};
+use super::curves::{Growing, Leaving, Point, Setting};
 use super::ends::coasting_rate;
-use super::launch::{Care, grown};
+use super::growing_open::{GrowingOpen, OpenPoint};
+use super::launch::{Care, grown, grown_to};
 use super::polish::{Conditions, Flight, Kind};
 use super::prove::{Flown, answered};
 use super::rendezvous::same;
@@ -28,31 +29,93 @@ const STARTS: [f64; 3] = [0.0, 1.0 / 3.0, 2.0 / 3.0];
 /// Most Jacobians along one direction of one curve, from the first start and from the later ones.
 const BUDGETS: [usize; 3] = [500, 1500, 1500];
 
-/// Flights with both ends free, fastest first: every stationary departure point met while marching round the start
-/// orbit from the first start that succeeds, then (where none was found) from the others.
+/// Flights with both ends free, fastest first.
 ///
-/// A stationary point of flight time over departure place has l . (rate of the departure body) = 0.
+/// A stationary point of flight time over departure place has l . (rate of the departure body) = 0. Those met while
+/// marching round the start orbit are taken; where there are none, those of nearly round orbits are grown.
 pub fn free_ends(setting: &Setting, conditions: &Conditions<'_>) -> Vec<Flown> {
-    let period = std::f64::consts::TAU * setting.ends.from.semi_major_axis.powf(1.5);
-    let mut found: Vec<Flown> = Vec::new();
-    for (part, budget) in STARTS.into_iter().zip(BUDGETS) {
-        for care in [Care::QUICK, Care::CAREFUL] {
-            let Some(open) = launched(setting, part * period, &care) else { continue };
-            for crossing in crossings(setting, &open, period, &care, budget) {
-                let answer = answered(Kind::OpenEnds, conditions, crossing);
-                found
-                    .extend(answer.filter(|new| found.iter().all(|known| !same(&known.flight, &new.flight))));
-            }
-            if !found.is_empty() {
-                break;
-            }
-        }
-        if !found.is_empty() {
-            break;
+    let mut found = Collected::new(conditions);
+    marched(setting, STARTS[0], BUDGETS[0], &mut found);
+    if found.flights.is_empty() {
+        grown_from_round(setting, &mut found);
+    }
+    for (part, budget) in STARTS.into_iter().zip(BUDGETS).skip(1) {
+        if found.flights.is_empty() {
+            marched(setting, part, budget, &mut found);
         }
     }
-    found.sort_by(|a, b| a.flight.time.total_cmp(&b.flight.time));
-    found
+    found.sorted()
+}
+
+/// Distinct proven flights.
+struct Collected<'a> {
+    conditions: &'a Conditions<'a>,
+    flights: Vec<Flown>,
+}
+
+impl<'a> Collected<'a> {
+    fn new(conditions: &'a Conditions<'a>) -> Self {
+        Collected { conditions, flights: Vec::new() }
+    }
+
+    fn add(&mut self, guess: Flight) {
+        let answer = answered(Kind::OpenEnds, self.conditions, guess);
+        let known = |new: &Flown| self.flights.iter().any(|known| same(&known.flight, &new.flight));
+        if let Some(new) = answer.filter(|new| !known(new)) {
+            self.flights.push(new);
+        }
+    }
+
+    fn sorted(mut self) -> Vec<Flown> {
+        self.flights.sort_by(|a, b| a.flight.time.total_cmp(&b.flight.time));
+        self.flights
+    }
+}
+
+/// Stationary departure points met while marching round the start orbit from a part of its period.
+fn marched(setting: &Setting, part: f64, budget: usize, found: &mut Collected<'_>) {
+    let period = period(setting);
+    for care in [Care::QUICK, Care::CAREFUL] {
+        if !found.flights.is_empty() {
+            return;
+        }
+        if let Some(open) = launched(setting, part * period, &care) {
+            crossings(setting, &open, period, &care, budget).into_iter().for_each(|guess| found.add(guess));
+        }
+    }
+}
+
+fn period(setting: &Setting) -> f64 {
+    std::f64::consts::TAU * setting.ends.from.semi_major_axis.powf(1.5)
+}
+
+/// Shape at which orbits are still so round that marching meets every stationary departure point.
+const NEARLY_ROUND: f64 = 0.1;
+
+/// Stationary departure points of nearly round orbits, grown to the orbits themselves.
+fn grown_from_round(setting: &Setting, found: &mut Collected<'_>) {
+    let care = Care::CAREFUL;
+    let round = Setting { ends: setting.ends.at_shape(NEARLY_ROUND), tolerance: care.tolerance, ..*setting };
+    let Some(open) = grown_to(&Setting { tolerance: care.tolerance, ..*setting }, &care, NEARLY_ROUND) else {
+        return;
+    };
+    let open = Point { parameter: 0.0, ..open };
+    let tracing = Setting { tolerance: care.tolerance, ..*setting };
+    let curve = GrowingOpen(&tracing);
+    for guess in crossings(&round, &open, period(setting), &care, BUDGETS[1]) {
+        let point = Point {
+            costate: guess.costate,
+            time: guess.time,
+            arrival: guess.arrival,
+            parameter: NEARLY_ROUND,
+        };
+        let goal = Goal { parameter: Growing::scaled(1.0), sign: 1.0 };
+        let start = OpenPoint { point, departure: guess.departure };
+        let followed = follow(&curve, start, &goal, &care.stride(), &mut |_| true);
+        if followed.ended == Ended::Reached {
+            found.add(flight(&followed.point.point, followed.point.departure));
+        }
+    }
 }
 
 /// An orbit match that leaves from the place `departure` on the start orbit; the point's parameter is that place.

@@ -55,8 +55,7 @@ impl Curve<7, 8> for Calendar<'_> {
         let start = (conditions.from)(point.parameter)?;
         let target = (conditions.to)(point.parameter + point.time)?;
         let (leaving, along) = (coasting_rate(&start), coasting_rate(&target));
-        let terminal =
-            fly(conditions.lightness, &start, &leaving, &point.costate, point.time, TOLERANCE)?;
+        let terminal = fly(conditions.lightness, &start, &leaving, &point.costate, point.time, TOLERANCE)?;
         let scales = row_scales(conditions.target_axis);
         Some(meeting_rows(&scales, &point.costate, &terminal, &terminal.by_start, (&target, &along)))
     }
@@ -132,14 +131,8 @@ impl Branch {
 }
 
 /// Steps along the arc where the calendar is steep.
-const ALONG: Stride = Stride {
-    first: 0.05,
-    largest: 0.6,
-    smallest: 1e-6,
-    accept: 2e-3,
-    wanted_correction: 0.01,
-    budget: 150,
-};
+const ALONG: Stride =
+    Stride { first: 0.05, largest: 0.6, smallest: 1e-6, accept: 2e-3, wanted_correction: 0.01, budget: 150 };
 
 /// Every branch that a cold start finds at a departure: two, as a rule.
 pub fn cold(route: &Route<'_>, departure: f64, care: &Care) -> Vec<Branch> {

@@ -41,12 +41,38 @@ pub fn fly(
     time: f64,
     tolerance: f64,
 ) -> Option<Terminal> {
+    seeded::<6>(lightness, start, &[start_rate], costate, time, tolerance).map(|(terminal, _)| terminal)
+}
+
+/// Like [`fly`] with two movements of the first state; the derivative by the second is returned beside.
+pub fn fly_two_ways(
+    lightness: f64,
+    start: &State,
+    start_rates: [&State; 2],
+    costate: &Vector6<f64>,
+    time: f64,
+    tolerance: f64,
+) -> Option<(Terminal, Augmented<f64>)> {
+    seeded::<7>(lightness, start, &start_rates, costate, time, tolerance)
+}
+
+/// Five seeds for the costate, the others for `start_rates`: the last of these is returned beside the terminal.
+fn seeded<const SEEDS: usize>(
+    lightness: f64,
+    start: &State,
+    start_rates: &[&State],
+    costate: &Vector6<f64>,
+    time: f64,
+    tolerance: f64,
+) -> Option<(Terminal, Augmented<f64>)> {
     let basis = tangents(costate);
     let flow = Extremal { lightness };
-    let seeded: Augmented<Dual<6>> = std::array::from_fn(|i| {
-        let mut d = [0.0; 6];
+    let first: Augmented<Dual<SEEDS>> = std::array::from_fn(|i| {
+        let mut d = [0.0; SEEDS];
         if i < 6 {
-            d[5] = start_rate[i];
+            for (d, rate) in d.iter_mut().skip(5).zip(start_rates) {
+                *d = rate[i];
+            }
             Dual { v: start[i], d }
         } else {
             for (k, d) in d.iter_mut().take(5).enumerate() {
@@ -55,7 +81,7 @@ pub fn fly(
             Dual { v: costate[i - 6], d }
         }
     });
-    let outcome = integrate(&flow, &seeded, time, &Options { tolerance, max_steps: MAX_STEPS });
+    let outcome = integrate(&flow, &first, time, &Options { tolerance, max_steps: MAX_STEPS });
     if outcome.termination != Termination::Reached {
         return None;
     }
@@ -63,5 +89,6 @@ pub fn fly(
     let rates = flow.rates(Mode::default(), &end);
     let tangent = SMatrix::<f64, 12, 5>::from_fn(|i, k| outcome.state[i].d[k]);
     let by_start = outcome.state.map(|y| y.d[5]);
-    Some(Terminal { end, rates, by_costate: tangent * basis.transpose(), by_start })
+    let by_last = outcome.state.map(|y| y.d[SEEDS - 1]);
+    Some((Terminal { end, rates, by_costate: tangent * basis.transpose(), by_start }, by_last))
 }
