@@ -55,6 +55,8 @@ fn every_number_of_the_report_is_one() {
             "/craft/delivered_kg",
             "/craft/mass_kg",
             "/craft/side_m",
+            "/ends/from/mean_anomaly_deg",
+            "/ends/to/mean_anomaly_deg",
             "/flight/arrive",
             "/flight/depart",
             "/flight/earth_range_max_au",

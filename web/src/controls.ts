@@ -7,11 +7,17 @@ export type CraftBy = "size" | "acceleration" | "lightness";
 export interface Scenario {
   texts: Readonly<Record<string, string>>;
   craftBy: CraftBy;
+  /** Fields without a meaning here that a link set all the same: shown, so that nothing a link says is hidden. */
+  pinned: ReadonlySet<string>;
 }
 
 export interface Control {
   key: string;
   group: "craft" | "ends" | "steering" | "baseline" | "about";
+  /** Element of an orbit: the key that carries it in the link, and its name there. */
+  element?: { key: OrbitKey; name: string };
+  /** Kind of text field; a number if left out. */
+  kind?: "date" | "text";
   /** Fixed choices instead of a text field: value and words. */
   choices?: readonly (readonly [string, string])[];
   /** Ends of a logarithmic slider beside the field. */
@@ -23,6 +29,8 @@ export interface Control {
   unit?: string;
   range?: string;
   help?: string;
+  /** What an empty field stands for. */
+  standing?: string;
 }
 
 /** Lightness number: a field of the page, converted to `ac_mm_s2` for the link. */
@@ -36,6 +44,34 @@ export const GROUPS = [
   ["about", "Title"],
 ] as const;
 
+/** Keys that carry an orbit as a list of elements. */
+export const ORBIT_KEYS = ["from_orbit", "to_orbit"] as const;
+export type OrbitKey = (typeof ORBIT_KEYS)[number];
+
+interface Element {
+  name: string;
+  label: string;
+  unit: string;
+  range: string;
+  help: string;
+  /** What stands for the element when the field is left empty; the first has to be given. */
+  default: string;
+}
+
+/** Elements in the order in which the link lists them; names as the core's messages use them. */
+export const ELEMENTS: readonly Element[] = [
+  { name: "a_au", label: "Semi-major axis", unit: "au", range: "0.2 to 40", help: "", default: "" },
+  { name: "e", label: "Eccentricity", unit: "", range: "0 to 0.99", help: "", default: "0" },
+  { name: "i_deg", label: "Inclination", unit: "deg", range: "0 to 180", help: "To the ecliptic of J2000.", default: "0" },
+  { name: "node_deg", label: "Ascending node", unit: "deg", range: "-360 to 360", help: "", default: "0" },
+  { name: "arg_peri_deg", label: "Argument of perihelion", unit: "deg", range: "-360 to 360", help: "From the node, not the longitude.", default: "0" },
+  { name: "mean_anomaly_deg", label: "Mean anomaly", unit: "deg", range: "-360 to 360", help: "At the epoch.", default: "0" },
+  { name: "epoch_jd_tdb", label: "Epoch", unit: "JD", range: "", help: "Julian date, TDB; left out: J2000, 2451545.", default: "2451545" },
+];
+
+/** The field of one element of an orbit. */
+export const elementKey = (orbit: OrbitKey, element: string): string => `${orbit}_${element}`;
+
 const BODIES = [
   ["mercury", "Mercury"],
   ["venus", "Venus"],
@@ -45,7 +81,17 @@ const BODIES = [
   ["saturn", "Saturn"],
   ["uranus", "Uranus"],
   ["neptune", "Neptune"],
-  ["orbit", "a circle of given radius"],
+  ["orbit", "an orbit of your own"],
+] as const;
+
+const GEOMETRIES = [
+  ["coplanar", "circles in one plane"],
+  ["spatial", "orbits as they are, dated or not"],
+] as const;
+
+const ARRIVALS = [
+  ["orbit", "match its orbit"],
+  ["rendezvous", "meet the body"],
 ] as const;
 
 const STEERING = [
@@ -55,7 +101,24 @@ const STEERING = [
 ] as const;
 
 const by = (way: CraftBy) => (scenario: Scenario) => scenario.craftBy === way;
-const circle = { unit: "au", range: "0.2 to 40", help: "" };
+const inSpace = ({ texts }: Scenario) => texts.geometry === "spatial";
+const onCircles = (scenario: Scenario) => !inSpace(scenario);
+
+/** One field for each element: a circle needs but its radius, and only a dated flight asks where the body is. */
+function elements(key: OrbitKey, end: "from" | "to"): Control[] {
+  const given = ({ texts }: Scenario) => texts[end] === "orbit";
+  return ELEMENTS.map(({ name, label, unit, range, help, default: standing }, i) => ({
+    key: elementKey(key, name),
+    group: "ends",
+    element: { key, name },
+    label,
+    unit,
+    range,
+    help,
+    standing,
+    asked: (scenario) => given(scenario) && (i === 0 || inSpace(scenario)) && (i < 5 || !!scenario.texts.depart),
+  }));
+}
 
 export const CONTROLS: readonly Control[] = [
   { key: "area_m2", group: "craft", slider: [10, 1e6], asked: by("size"), help: "" },
@@ -72,23 +135,40 @@ export const CONTROLS: readonly Control[] = [
     help: "Characteristic acceleration over the Sun's gravity at 1 au; the link carries the acceleration.",
   },
   { key: "assembly_g_m2", group: "craft", asked: by("size") },
+  { key: "geometry", group: "ends", choices: GEOMETRIES },
   { key: "from", group: "ends", choices: BODIES },
-  { key: "from_orbit", group: "ends", asked: ({ texts }) => texts.from === "orbit", label: "Radius of the start", ...circle },
+  ...elements("from_orbit", "from"),
   { key: "to", group: "ends", choices: BODIES },
-  { key: "to_orbit", group: "ends", asked: ({ texts }) => texts.to === "orbit", label: "Radius of the target", ...circle },
+  ...elements("to_orbit", "to"),
+  { key: "arrive", group: "ends", choices: ARRIVALS, asked: inSpace },
+  {
+    key: "depart",
+    group: "ends",
+    kind: "date",
+    asked: inSpace,
+    range: "YYYY-MM-DD, 1800 to 2050",
+    help: "0 h TDB of that day, about 69 s ahead of UTC. Left out: the best departure point, at no date.",
+  },
+  { key: "vinf_km_s", group: "ends" },
+  { key: "vinf_arrive_km_s", group: "ends" },
   { key: "deadline_d", group: "ends" },
-  { key: "steer", group: "steering", choices: STEERING },
-  { key: "cone_deg", group: "steering", asked: ({ texts }) => texts.steer === "fixed" },
+  { key: "steer", group: "steering", choices: STEERING, asked: onCircles },
+  { key: "cone_deg", group: "steering", asked: (scenario) => onCircles(scenario) && scenario.texts.steer === "fixed" },
   { key: "isp_s", group: "baseline" },
   { key: "park_km", group: "baseline" },
   { key: "capture_km", group: "baseline" },
   { key: "stage_dry", group: "baseline" },
-  { key: "title", group: "about", range: "Up to 80 characters", help: "Shown above the answer and carried by the link." },
+  { key: "title", group: "about", kind: "text", range: "Up to 80 characters", help: "Shown above the answer and carried by the link." },
 ];
 
 /** Keys that have a field of their own, asked for or not. */
-export const WITH_FIELD: ReadonlySet<string> = new Set(CONTROLS.map((control) => control.key));
+export const WITH_FIELD: ReadonlySet<string> = new Set([...CONTROLS.map((control) => control.key), ...ORBIT_KEYS]);
 
 export function isAsked(control: Control, scenario: Scenario): boolean {
-  return control.asked?.(scenario) ?? true;
+  return scenario.pinned.has(control.key) || (control.asked?.(scenario) ?? true);
+}
+
+/** What an untouched field holds, given the core's defaults. */
+export function untouched(control: Control, defaults: Readonly<Record<string, string>>): string {
+  return control.standing ?? defaults[control.key] ?? "";
 }

@@ -2,20 +2,18 @@
 // do not see it, and a redraw whenever size, look or flight change.
 import { h, oncePerFrame } from "./dom";
 import type { Client } from "./engine/client";
-import type { FigureName, FigurePanel, Figures } from "./engine/core";
+import type { FigureName, FigureOptions, FigurePanel, Figures } from "./engine/core";
 import type { State } from "./state";
 
-export interface View {
-  zoom: number;
-  pan_x_au: number;
-  pan_y_au: number;
-}
+/** Ecliptic x, y and z. */
+export type Vector = readonly [number, number, number];
 
 export interface FigureParts {
   name: FigureName;
   /** Height in CSS pixels for a width. */
   height: (width: number) => number;
-  view?: () => View;
+  /** What of the figure is shown; with a cursor in it, the figure is drawn anew as the cursor moves. */
+  view?: () => Omit<FigureOptions, "width" | "height" | "scale" | "theme" | "stale">;
   /** Draws what moves, in CSS pixels, on a cleared layer. */
   overlay: (context: CanvasRenderingContext2D, panels: readonly FigurePanel[]) => void;
 }
@@ -43,7 +41,7 @@ export class Figure {
     state.shown.watch(() => this.renew());
     state.theme.watch(this.redraw);
     state.verdict.watch(this.redraw);
-    state.cursor_d.watch(this.redrawOverlay);
+    state.cursor_d.watch(() => (parts.view?.().cursor_t_d === undefined ? this.redrawOverlay() : this.redraw()));
     new ResizeObserver(this.redraw).observe(this.frame);
     addEventListener("resize", this.redraw);
   }
@@ -72,7 +70,7 @@ export class Figure {
       scale,
       theme: this.state.theme.get(),
       stale: this.state.verdict.get().link === null,
-      ...(this.parts.view?.() ?? { zoom: 1, pan_x_au: 0, pan_y_au: 0 }),
+      ...this.parts.view?.(),
     };
     const figures = this.figures;
     const map = this.client.guard(() => figures.draw(this.base, this.parts.name, options));
@@ -99,6 +97,12 @@ export function place(panel: FigurePanel, x: number, y: number): [number, number
   const scaled = panel.y_log ? Math.log : (value: number) => value;
   const down = (scaled(panel.y_max) - scaled(y)) / (scaled(panel.y_max) - scaled(panel.y_min));
   return [panel.left + ((x - panel.x_min) / (panel.x_max - panel.x_min)) * panel.width, panel.top + down * panel.height];
+}
+
+/** Place of a heliocentric position (au) in the orbit picture, CSS pixels from the left and the top. */
+export function project({ project: m, center_x, center_y }: FigurePanel, [x, y, z]: Vector): [number, number] {
+  if (!m) return [Number.NaN, Number.NaN];
+  return [(center_x ?? 0) + m[0] * x + m[1] * y + m[2] * z, (center_y ?? 0) + m[3] * x + m[4] * y + m[5] * z];
 }
 
 /** A colour of the style sheet, by token. */

@@ -19,6 +19,11 @@ function escape(value: string): string {
     .replaceAll("%20", "+");
 }
 
+/** What a canonical link says for a key; undefined where it leaves the key out. */
+export function valueOf(link: string, key: string): string | undefined {
+  return new URLSearchParams(link).get(key) ?? undefined;
+}
+
 /** What stands after the # of the address. */
 export function readFragment(): string {
   return location.hash.slice(1);

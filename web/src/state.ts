@@ -1,11 +1,30 @@
 // The page's one state: what was typed, what the core says about it, and what is shown.
 import { Cell } from "./cell";
-import { CONTROLS, LIGHTNESS, WITH_FIELD, isAsked, type Control, type CraftBy, type Scenario } from "./controls";
+import {
+  CONTROLS,
+  ELEMENTS,
+  LIGHTNESS,
+  ORBIT_KEYS,
+  WITH_FIELD,
+  elementKey,
+  isAsked,
+  untouched,
+  type Control,
+  type CraftBy,
+  type OrbitKey,
+  type Scenario,
+} from "./controls";
 import type { Checked, Theme } from "./engine/core";
 import type { Histories } from "./engine/histories";
 import type { Solved } from "./engine/protocol";
-import type { LinkError } from "./engine/report";
+import type { End, LinkError } from "./engine/report";
 import { compose } from "./link";
+
+/** Stands in for a comma typed into one element's field, where it would end the value: refused by any reader. */
+const NO_COMMA = "\u201a";
+
+/** Julian date of the day 1970-01-01, 0 h. */
+const UNIX_EPOCH_JD = 2440587.5;
 
 /** What the core says about the scenario as typed. */
 export interface Verdict {
@@ -46,31 +65,50 @@ export class State {
     /** From the core; converts the lightness number. */
     private readonly sunGravity_mm_s2: number,
   ) {
-    this.scenario = new Cell<Scenario>({ texts: defaults, craftBy: "size" });
+    this.scenario = new Cell<Scenario>({ texts: defaults, craftBy: "size", pinned: new Set() });
     this.theme = new Cell(theme);
   }
 
   /** Takes over every key's value from the core, as it does when a link opens. */
   load(checked: Checked): void {
-    const texts = Object.fromEntries(checked.entries);
-    this.scenario.set({ texts, craftBy: texts.ac_mm_s2 ? "acceleration" : "size" });
+    const texts: Record<string, string> = Object.fromEntries(checked.entries);
+    for (const key of ORBIT_KEYS) {
+      const values = texts[key] ? texts[key].split(",") : [];
+      ELEMENTS.forEach(({ name }, i) => (texts[elementKey(key, name)] = values[i] ?? ""));
+      delete texts[key];
+    }
+    const craftBy = texts.ac_mm_s2 ? "acceleration" : "size";
+    const bare = { texts, craftBy, pinned: new Set<string>() } as const;
+    const isSet = (control: Control) => texts[control.key] && texts[control.key] !== untouched(control, this.defaults);
+    const pinned = CONTROLS.filter((control) => !isAsked(control, bare) && isSet(control)).map((control) => control.key);
+    this.scenario.set({ texts, craftBy, pinned: new Set(pinned) });
   }
 
   edit(key: string, text: string): void {
-    const { texts, craftBy } = this.scenario.get();
+    const { texts, craftBy, pinned } = this.scenario.get();
     if (texts[key] === text) return;
     const next = { ...texts, [key]: text };
-    // A circle that has no radius yet starts from the orbit it takes the place of.
-    if ((key === "from" || key === "to") && text === "orbit" && !texts[`${key}_orbit`]) {
-      const radius_au = this.shown.get()?.solved.report.ends[key].semi_major_axis_au;
-      if (radius_au !== undefined) next[`${key}_orbit`] = String(Number(radius_au.toPrecision(6)));
+    // An orbit that has no size yet starts from the one it takes the place of.
+    if ((key === "from" || key === "to") && text === "orbit" && !texts[elementKey(`${key}_orbit`, "a_au")]) {
+      const report = this.shown.get()?.solved.report;
+      if (report) Object.assign(next, elementsOf(`${key}_orbit`, report.ends[key], report.flight.depart));
     }
-    this.scenario.set({ texts: next, craftBy });
+    this.scenario.set({ texts: next, craftBy, pinned: this.stillPinned(pinned, { texts: next, craftBy }) });
+  }
+
+  /** A field stays shown against its meaning until it is emptied or gets a meaning. */
+  private stillPinned(pinned: ReadonlySet<string>, { texts, craftBy }: Omit<Scenario, "pinned">): ReadonlySet<string> {
+    if (pinned.size === 0) return pinned;
+    const bare = { texts, craftBy, pinned: new Set<string>() };
+    const stays = (control: Control) =>
+      pinned.has(control.key) && !isAsked(control, bare) && texts[control.key] !== untouched(control, this.defaults) && texts[control.key] !== "";
+    return new Set(CONTROLS.filter(stays).map((control) => control.key));
   }
 
   /** Gives the craft another way; a field that is still empty starts from the craft shown. */
   giveCraftBy(craftBy: CraftBy): void {
-    const texts = { ...this.scenario.get().texts };
+    const { pinned, ...scenario } = this.scenario.get();
+    const texts = { ...scenario.texts };
     const craft = this.shown.get()?.solved.report.craft;
     const offer = (key: string, value: string | number | null | undefined) => {
       if (!texts[key] && value) texts[key] = typeof value === "number" ? String(Number(value.toPrecision(6))) : value;
@@ -78,7 +116,7 @@ export class State {
     if (craftBy === "acceleration") offer("ac_mm_s2", craft?.ac_mm_s2);
     if (craftBy === "lightness") offer(LIGHTNESS, craft?.lightness);
     if (craftBy === "size") for (const key of ["area_m2", "mass_kg"]) offer(key, this.defaults[key]);
-    this.scenario.set({ texts, craftBy });
+    this.scenario.set({ texts, craftBy, pinned });
   }
 
   /** The scenario text for the core: fields that are asked for, and keys without a field that a link set. */
@@ -89,11 +127,29 @@ export class State {
     for (const control of CONTROLS) {
       if (!isAsked(control, scenario)) continue;
       const text = texts[control.key] ?? "";
+      if (control.element) continue;
       if (control.key === LIGHTNESS) entries.push(["ac_mm_s2", this.accelerationOf(text)]);
       // An optional field left empty is left out; any other empty field is for the core to refuse.
       else if (text !== "" || this.isNeeded(control.key)) entries.push([control.key, text]);
     }
+    for (const key of ORBIT_KEYS) {
+      const orbit = this.orbitText(key);
+      if (orbit !== null) entries.push([key, orbit]);
+    }
     return compose([...entries, ...this.extras()]);
+  }
+
+  /** The elements that are asked for as one list; trailing ones that were left empty are left out. */
+  private orbitText(key: OrbitKey): string | null {
+    const scenario = this.scenario.get();
+    const controls = CONTROLS.filter((control) => control.element?.key === key);
+    const values = controls.map((control) => (isAsked(control, scenario) ? (scenario.texts[control.key] ?? "") : ""));
+    if (!controls.some((control) => isAsked(control, scenario))) return null;
+    const last = values.findLastIndex((value) => value !== "");
+    return controls
+      .slice(0, Math.max(1, last + 1))
+      .map((control, i) => (values[i] || (control.standing ?? "")).replaceAll(",", NO_COMMA))
+      .join(",");
   }
 
   /** Keys that a link set and that have no field here. */
@@ -111,16 +167,18 @@ export class State {
 
   /** Errors at this control's field, where it is asked for. */
   errorsAt(control: Control): LinkError[] {
-    if (!isAsked(control, this.scenario.get())) return [];
-    const key = control.key === LIGHTNESS ? "ac_mm_s2" : control.key;
-    return this.verdict.get().errors.filter((error) => error.key === key);
+    return this.verdict.get().errors.filter((error) => this.controlOf(error) === control);
   }
 
-  /** The control whose field shows errors of this key, if any does now. */
-  controlOf(key: string): Control | undefined {
+  /** The control whose field shows this error, if any does now. */
+  controlOf(error: LinkError): Control | undefined {
     const scenario = this.scenario.get();
-    const shows = (control: Control) => control.key === key || (control.key === LIGHTNESS && key === "ac_mm_s2");
-    return CONTROLS.find((control) => shows(control) && isAsked(control, scenario));
+    const asked = CONTROLS.filter((control) => isAsked(control, scenario));
+    const whole = asked.find((control) => control.key === (error.key === "ac_mm_s2" && scenario.craftBy === "lightness" ? LIGHTNESS : error.key));
+    if (whole) return whole;
+    // The core names the element in the first word of the rule; what concerns the list as a whole goes to the first.
+    const elements = asked.filter((control) => control.element?.key === error.key);
+    return elements.find((control) => error.rule.startsWith(`${control.element?.name} `)) ?? elements[0];
   }
 
   /** Whether what is shown answers what is typed. */
@@ -137,4 +195,20 @@ export class State {
     const value = Number(lightness);
     return lightness.trim() === "" || !Number.isFinite(value) ? lightness : String(value * this.sunGravity_mm_s2);
   }
+}
+
+/** The fields that describe this orbit; where its body is only with a date. */
+function elementsOf(key: OrbitKey, end: End, depart: string | null): Record<string, string> {
+  const day = depart === null ? Number.NaN : Date.parse(`${depart.slice(0, 10)}T00:00:00Z`);
+  const dated = end.mean_anomaly_deg !== null && Number.isFinite(day);
+  const values = [
+    end.semi_major_axis_au,
+    end.eccentricity,
+    end.inclination_deg,
+    end.node_deg,
+    end.arg_peri_deg,
+    ...(dated ? [end.mean_anomaly_deg, day / 86_400_000 + UNIX_EPOCH_JD] : []),
+  ];
+  const written = (value: number | null, i: number) => (!value ? "" : String(Number(value.toPrecision(i === 6 ? 10 : 6))));
+  return Object.fromEntries(values.map((value, i) => [elementKey(key, ELEMENTS[i]?.name ?? ""), written(value, i)]));
 }

@@ -1,7 +1,7 @@
 //! A report and checks in lines for people.
 
 use scenario::checks::CheckRow;
-use scenario::report::{Flight, ImpulsiveWay, Report};
+use scenario::report::{Flight, ImpulsiveWay, Margin, Report, Status};
 use scenario::words::{days, grouped, short};
 
 /// The whole report, a fact a line.
@@ -38,9 +38,14 @@ fn sail(flight: &Flight) -> Vec<String> {
         ("film", flight.film_temp_max_k.map(|x| format!("{} K at most", grouped(x, 0)))),
         ("turn rate", flight.turn_rate_max_deg_d.map(|x| format!("{} deg/d at most", short(x)))),
         ("sail dv", flight.sail_dv_km_s.map(|x| format!("{} km/s", grouped(x, 2)))),
-        ("margin", flight.margin.as_ref().map(|m| format!("{} d in hand", grouped(m.days_in_hand, 1)))),
+        ("margin", flight.margin.as_ref().map(margin)),
     ];
     facts.into_iter().filter_map(|(name, fact)| fact.map(|fact| format!("{name:<12}{fact}"))).collect()
+}
+
+fn margin(margin: &Margin) -> String {
+    let growth = margin.mass_growth_pct.map(|pct| format!(", {} % of mass growth", grouped(pct, 1)));
+    format!("{} d in hand{}", grouped(margin.days_in_hand, 1), growth.unwrap_or_default())
 }
 
 fn range_au((nearest, farthest): (f64, f64)) -> String {
@@ -61,7 +66,8 @@ fn proof(flight: &Flight) -> Vec<String> {
     let proof = &flight.proof;
     let mut lines = vec![format!("method      {}", proof.method)];
     if let (Some(km), Some(m_s)) = (proof.position_error_km, proof.speed_error_m_s) {
-        lines.push(format!("re-flown    misses by {km:.2e} km and {m_s:.2e} m/s"));
+        let how = if flight.status == Status::Flown { "as flown" } else { "re-flown" };
+        lines.push(format!("{how:<12}misses by {km:.2e} km and {m_s:.2e} m/s"));
     }
     if let Some(drift) = proof.hamiltonian_drift {
         lines.push(format!(

@@ -72,7 +72,16 @@ const FIELDS: &[(&str, &[&str])] = &[
     ("/ends", &["from", "to"]),
     (
         "/ends/from",
-        &["name", "semi_major_axis_au", "eccentricity", "inclination_deg", "node_deg", "arg_peri_deg"],
+        &[
+            "name",
+            "semi_major_axis_au",
+            "eccentricity",
+            "inclination_deg",
+            "node_deg",
+            "arg_peri_deg",
+            "mean_anomaly_deg",
+            "period_d",
+        ],
     ),
     (
         "/craft",
@@ -319,7 +328,7 @@ fn bad_input_ends_with_2_and_names_the_key() {
 fn refused_combinations_end_with_2_and_say_what_to_do() {
     check_refused(&["solve", "cone_deg=20"], 2, &["cone_deg: 20"]);
     check_refused(&["solve", "arrive=rendezvous"], 2, &["arrive: rendezvous"]);
-    check_refused(&["solve", "geometry=spatial"], 2, &["geometry: spatial"]);
+    check_refused(&["solve", "geometry=spatial&steer=local"], 2, &["steer: local"]);
     check_refused(&["solve", "to=orbit&to_orbit=1.5,0.2"], 2, &["to_orbit: 1.5,0.2"]);
 }
 

@@ -4,7 +4,7 @@
 mod sample;
 
 use figures::{FigureOptions, ThemeName, layout, svg};
-use sample::{Cone, MARS, Spiral, flight, without_flight};
+use sample::{CROSSING, Cone, Crossing, MARS, Spiral, crossing, flight, without_flight};
 use scenario::report::{Columns, Report, Status};
 
 fn main() -> Result<(), Box<dyn std::error::Error>> {
@@ -33,7 +33,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         for theme in [ThemeName::Light, ThemeName::Dark] {
             for width in [360.0, 760.0] {
                 for figure in figures::NAMES {
-                    let height = figures::usual_height(figure, width).ok_or("unknown figure")?;
+                    let height = figures::usual_height(figure, width, 4).ok_or("unknown figure")?;
                     let options = FigureOptions { width, height, theme, ..FigureOptions::default() };
                     let look = if theme == ThemeName::Light { "light" } else { "dark" };
                     let path = folder.join(format!("{figure}_{name}_{look}_{width}.svg"));
@@ -42,6 +42,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
             }
         }
     }
+    space(&folder)?;
     let (report, columns) = flight(MARS);
     let zoomed = FigureOptions { zoom: 4.0, pan_x_au: 0.9, pan_y_au: 0.3, ..FigureOptions::default() };
     std::fs::write(folder.join("orbit_zoomed.svg"), svg(&layout("orbit", &report, &columns, &zoomed)?))?;
@@ -51,6 +52,64 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
     for figure in figures::NAMES {
         let drawn = svg(&layout(figure, &report, &columns, &wide)?);
         std::fs::write(folder.join(format!("{figure}_wide.svg")), drawn)?;
+    }
+    Ok(())
+}
+
+/// Flights in space from several sides.
+fn space(folder: &std::path::Path) -> Result<(), Box<dyn std::error::Error>> {
+    let steep = Crossing {
+        to: "the 0.48 au orbit",
+        shape: (0.48, 0.2),
+        angles_deg: [30.0, 20.0, 60.0],
+        turns: 6.3,
+        rows: 2400,
+        dates: None,
+        ..CROSSING
+    };
+    let body = Crossing {
+        to: "the 1.3 au orbit",
+        shape: (1.3, 0.35),
+        angles_deg: [18.0, 130.0, 250.0],
+        start_deg: 20.0,
+        turns: 0.85,
+        dates: Some(("2029-02-11", "2030-01-20")),
+        ahead_deg: 70.0,
+        ..CROSSING
+    };
+    let back = Crossing { shape: (3.0, 0.7), angles_deg: [115.0, 300.0, 80.0], turns: 2.4, ..body };
+    for (name, flown) in [("rendezvous", CROSSING), ("steep", steep), ("body", body), ("back", back)] {
+        let (report, columns) = crossing(flown);
+        for (theme, look) in [(ThemeName::Light, "light"), (ThemeName::Dark, "dark")] {
+            for width in [360.0, 760.0, 1400.0] {
+                for (tilt_deg, turn_deg) in [(0.0, 0.0), (60.0, 20.0), (90.0, 0.0)] {
+                    let height = if width > 1000.0 { 900.0 } else { width };
+                    let cursor_t_d = (tilt_deg == 60.0).then_some(120.0);
+                    let options = FigureOptions {
+                        width,
+                        height,
+                        theme,
+                        tilt_deg,
+                        turn_deg,
+                        cursor_t_d,
+                        ..FigureOptions::default()
+                    };
+                    let drawn = svg(&layout("orbit", &report, &columns, &options)?);
+                    let file = format!("space_{name}_{look}_{width}_{tilt_deg}.svg");
+                    std::fs::write(folder.join(file), drawn)?;
+                }
+                let usual = figures::usual_panels(&report, &columns);
+                let mut panels: Vec<String> = usual.iter().map(|name| (*name).to_owned()).collect();
+                if name == "body" {
+                    panels.extend(["film_temp_k".to_owned(), "sail_accel_mm_s2".to_owned()]);
+                }
+                let height =
+                    figures::usual_height("histories", width, panels.len()).ok_or("unknown figure")?;
+                let options = FigureOptions { width, height, theme, panels, ..FigureOptions::default() };
+                let drawn = svg(&layout("histories", &report, &columns, &options)?);
+                std::fs::write(folder.join(format!("space_{name}_{look}_{width}_histories.svg")), drawn)?;
+            }
+        }
     }
     Ok(())
 }

@@ -1,93 +1,49 @@
 //! Histories of the flight: panels stacked over one shared time axis.
 
-use scenario::report::{Columns, End, Report};
+use scenario::report::{Columns, Ends, Report};
 
-use crate::axis::{Steps, Tick, extent, linear_ticks, log_ticks, padded};
+use crate::axis::{Steps, Tick, extent, linear_ticks};
+use crate::calendar::{date_ticks, day, start_d};
 use crate::geometry::{Rect, clip, reduce};
 use crate::labels::{Room, Style};
 use crate::metrics::{text_height, text_width};
 use crate::notes;
+use crate::panels::{Kind, Quantity, Scale, end_ranges, quantities, scale};
 use crate::shapes::{Anchor, Point, Shape, Stroke, Text, Weight, printable};
 use crate::theme::{Color, Theme};
-use crate::{Drawing, FigureOptions, Panel};
+use crate::{Drawing, FigureError, FigureOptions, Panel};
 
 /// Font size of tick labels, CSS pixels.
-const TICK_SIZE: f64 = 11.0;
+pub(crate) const TICK_SIZE: f64 = 11.0;
 /// Font size of panel names, CSS pixels.
 const NAME_SIZE: f64 = 12.0;
 /// Height of a panel's name line, CSS pixels.
 const NAME_HEIGHT: f64 = 20.0;
 /// Height below the last panel: tick labels and the time axis's name.
 const FOOT: f64 = 38.0;
+/// Height of the calendar below the tick labels, CSS pixels.
+const CALENDAR: f64 = 20.0;
 /// Space between two labels of one axis, CSS pixels.
 const GAP: f64 = 8.0;
-/// Decades that a logarithmic panel shows below its largest value; smaller values run along its floor.
-const DECADES: f64 = 3.5;
-
-/// How a quantity is drawn.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-enum Kind {
-    /// An angle: ticks at parts of a right angle, a line at zero, jumps.
-    Angle,
-    /// A distance: the radii of circular orbits at both ends are drawn too.
-    Distance,
-    /// Anything else on a linear axis.
-    Plain,
-    /// A quantity that spans decades.
-    Log,
-}
-
-/// One panel before it is drawn.
-struct Quantity<'a> {
-    column: &'static str,
-    name: &'static str,
-    unit: &'static str,
-    kind: Kind,
-    values: &'a [f64],
-}
-
-fn quantities(columns: &Columns) -> [Quantity<'_>; 4] {
-    let quantity = |column, name, unit, kind, values| Quantity { column, name, unit, kind, values };
-    [
-        quantity("cone_deg", "Cone angle", "deg", Kind::Angle, &columns.cone_deg),
-        quantity("distance_au", "Distance from the Sun", "au", Kind::Distance, &columns.distance_au),
-        quantity("speed_km_s", "Speed", "km/s", Kind::Plain, &columns.speed_km_s),
-        quantity("turn_rate_deg_d", "Turn rate of the sail", "deg/d", Kind::Log, &columns.turn_rate_deg_d),
-    ]
-}
-
-/// The scale of one panel's y axis.
-struct Scale {
-    min: f64,
-    max: f64,
-    log: bool,
-    ticks: Vec<Tick>,
-}
-
-impl Scale {
-    /// Height above the bottom edge as a share of the panel's height.
-    fn share(&self, value: f64) -> f64 {
-        if self.log {
-            // Values at or below the floor run along it.
-            (value.max(self.min) / self.min).ln() / (self.max / self.min).ln()
-        } else {
-            (value - self.min) / (self.max - self.min)
-        }
-    }
-}
-
-pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, theme: &Theme) -> Drawing {
+pub(crate) fn draw(
+    report: &Report,
+    columns: &Columns,
+    options: &FigureOptions,
+    theme: &Theme,
+) -> Result<Drawing, FigureError> {
+    let quantities = quantities(report, columns, &options.panels)?;
     let whole = Rect { left: 0.0, top: 0.0, width: options.width, height: options.height };
     let mut shapes = vec![Shape::Polygon { points: whole.corners(), color: theme.sheet }];
     let sentences = notes::sentences(report, columns, options.stale);
     let used = notes::set(&mut shapes, &sentences, whole.grown(-10.0), theme);
     let Some((_, end_d)) = extent(&columns.t_d).filter(|_| notes::has_history(columns)) else {
-        return Drawing { shapes, panels: Vec::new() };
+        return Ok(Drawing { shapes, panels: Vec::new() });
     };
     let top = if used > 0.0 { used + 14.0 } else { 6.0 };
 
-    let quantities = quantities(columns);
-    let slot = (whole.height - top - FOOT) / quantities.len() as f64;
+    let depart_d = start_d(report.flight.depart.as_deref());
+    let foot_height = if depart_d.is_some() { FOOT + CALENDAR } else { FOOT };
+    let slot = (whole.height - top - foot_height) / quantities.len() as f64;
     let height = (slot - NAME_HEIGHT - 6.0).max(8.0);
     let scales: Vec<Scale> =
         quantities.iter().map(|quantity| scale(quantity, &report.ends, height)).collect();
@@ -105,9 +61,12 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
         let frame = Rect { left, top: top + slot * k as f64 + NAME_HEIGHT, width, height };
         let mut plot = Plot { shapes: &mut shapes, frame, end_d, scale, theme };
         plot.name(quantity);
+        if quantity.kind == Kind::Distance {
+            plot.bands(&report.ends);
+        }
         plot.grid(&times, quantity.kind, k + 1 == quantities.len());
         if quantity.kind == Kind::Distance {
-            plot.radii(&report.ends, columns);
+            plot.end_distances(&report.ends, columns);
         }
         plot.curve(&columns.t_d, quantity);
         panels.push(plot.panel(quantity));
@@ -117,74 +76,58 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
         let at = Point::new(left + width * tick.value / end_d, foot + 4.0 + text_height(TICK_SIZE) / 2.0);
         shapes.push(label(&tick.label, at, Anchor::Middle, TICK_SIZE, theme.muted));
     }
+    if let Some(depart_d) = depart_d {
+        let line = foot + 4.0 + text_height(TICK_SIZE) + 5.0;
+        let span = |tick: &Tick| label_span(tick, end_d, left, width);
+        let apart = |ticks: &[Tick]| are_apart(ticks, span);
+        let inside = |tick: &Tick| span(tick).0 >= 1.0 && span(tick).1 <= whole.width - 1.0;
+        for tick in date_ticks(depart_d, end_d, apart).into_iter().filter(inside) {
+            let x = left + width * tick.value / end_d;
+            let points = vec![Point::new(x, line - 2.0), Point::new(x, line + 3.0)];
+            shapes.push(Shape::Polyline { points, stroke: Stroke::solid(theme.edge, 1.0) });
+            let at = Point::new(x, line + 4.0 + text_height(TICK_SIZE) / 2.0);
+            shapes.push(label(&tick.label, at, Anchor::Middle, TICK_SIZE, theme.muted));
+        }
+        let points = vec![Point::new(left, line), Point::new(left + width, line)];
+        shapes.push(Shape::Polyline { points, stroke: Stroke::solid(theme.hairline, 1.0) });
+    }
     let at = Point::new(left, whole.height - 10.0);
-    shapes.push(label("Time since departure (d)", at, Anchor::Start, NAME_SIZE, theme.ink));
-    Drawing { shapes, panels }
+    let name = time_name(day(report.flight.depart.as_deref()).filter(|_| depart_d.is_some()), width);
+    shapes.push(label(&name, at, Anchor::Start, NAME_SIZE, theme.ink));
+    Ok(Drawing { shapes, panels })
+}
+
+/// The time axis in words; those of a dated flight are cut to the width there is.
+fn time_name(depart: Option<&str>, width: f64) -> String {
+    let Some(depart) = depart else { return "Time since departure (d)".to_owned() };
+    let long = format!("Time since departure on {depart} (d), and calendar date (TDB)");
+    let middle = format!("Time since {depart} (d), and date (TDB)");
+    let fits = |name: &String| text_width(name, NAME_SIZE, Weight::Normal) <= width;
+    [long, middle].into_iter().find(fits).unwrap_or_else(|| "Time (d), date (TDB)".to_owned())
 }
 
 fn label(content: &str, at: Point, anchor: Anchor, size: f64, color: Color) -> Shape {
     Shape::Text(Text { at, content: printable(content), anchor, size, color, weight: Weight::Normal })
 }
 
+/// From where to where a tick's label reaches on the shared time axis.
+fn label_span(tick: &Tick, end_d: f64, left: f64, width: f64) -> (f64, f64) {
+    let half = text_width(&tick.label, TICK_SIZE, Weight::Normal) / 2.0;
+    let x = left + width * tick.value / end_d;
+    (x - half, x + half)
+}
+
+/// Whether labels that reach so far keep apart.
+fn are_apart(ticks: &[Tick], span: impl Fn(&Tick) -> (f64, f64)) -> bool {
+    ticks.windows(2).all(|pair| span(&pair[0]).1 + GAP <= span(&pair[1]).0)
+}
+
 /// Ticks of the shared time axis; labels keep apart and inside the picture.
 fn time_ticks(end_d: f64, left: f64, width: f64, whole_width: f64) -> Vec<Tick> {
-    let span = |tick: &Tick| {
-        let half = text_width(&tick.label, TICK_SIZE, Weight::Normal) / 2.0;
-        let x = left + width * tick.value / end_d;
-        (x - half, x + half)
-    };
-    let mut ticks = linear_ticks(0.0, end_d, Steps::Decimal, |ticks| {
-        ticks.windows(2).all(|pair| span(&pair[0]).1 + GAP <= span(&pair[1]).0)
-    });
+    let span = |tick: &Tick| label_span(tick, end_d, left, width);
+    let mut ticks = linear_ticks(0.0, end_d, Steps::Decimal, |ticks| are_apart(ticks, span));
     ticks.retain(|tick| span(tick).0 >= 1.0 && span(tick).1 <= whole_width - 1.0);
     ticks
-}
-
-fn scale(quantity: &Quantity, ends: &scenario::report::Ends, height: f64) -> Scale {
-    let apart = text_height(TICK_SIZE) + 4.0;
-    let most = (height / apart).floor().max(1.0) as usize + 1;
-    let found = extent(quantity.values);
-    if quantity.kind == Kind::Log {
-        let top = found.map_or(1.0, |(_, high)| high).max(1e-6);
-        let positive: Vec<f64> = quantity.values.iter().copied().filter(|&v| v > 0.0).collect();
-        let low = extent(&positive).map_or(top / 10.0, |(low, _)| low).max(top / 10.0_f64.powf(DECADES));
-        // At least a decade, so that a steady rate does not look eventful.
-        let (min, max) = (low.min(top / 10.0) / 1.15, top * 1.15);
-        let ticks = log_ticks(min, max, |ticks| {
-            let px = |value: f64| height * (value / min).ln() / (max / min).ln();
-            ticks.windows(2).all(|pair| px(pair[1].value) - px(pair[0].value) >= apart)
-        });
-        return Scale { min, max, log: true, ticks };
-    }
-    let mut range = found.unwrap_or((0.0, 1.0));
-    if quantity.kind == Kind::Distance {
-        for radius in circle_radii(ends).into_iter().map(|(radius, _)| radius) {
-            range = (range.0.min(radius), range.1.max(radius));
-        }
-    }
-    let (min, max) = match quantity.kind {
-        // Angles are shown in whole steps of 15 degrees: a steady attitude then reads as steady.
-        Kind::Angle => {
-            let (low, high) = ((range.0 / 15.0).floor() * 15.0, (range.1 / 15.0).ceil() * 15.0);
-            if high > low { (low, high) } else { (low - 15.0, high + 15.0) }
-        }
-        _ => padded(range, 0.07),
-    };
-    let steps = if quantity.kind == Kind::Angle { Steps::Degrees } else { Steps::Decimal };
-    let ticks = linear_ticks(min, max, steps, |ticks| {
-        ticks.len() <= most
-            && ticks.windows(2).all(|pair| (pair[1].value - pair[0].value) / (max - min) * height >= apart)
-    });
-    Scale { min, max, log: false, ticks }
-}
-
-/// Radii of the ends whose distance from the Sun does not change, with their names.
-fn circle_radii(ends: &scenario::report::Ends) -> Vec<(f64, &End)> {
-    [&ends.from, &ends.to]
-        .into_iter()
-        .filter(|end| end.eccentricity == 0.0)
-        .map(|end| (end.semi_major_axis_au, end))
-        .collect()
 }
 
 /// One panel being drawn.
@@ -230,7 +173,7 @@ impl Plot<'_> {
         }
         for tick in &self.scale.ticks {
             let y = self.px(0.0, tick.value).y;
-            let zero = kind == Kind::Angle && tick.value == 0.0;
+            let zero = matches!(kind, Kind::Angle | Kind::Wrapped) && tick.value == 0.0;
             let stroke = if zero { Stroke::solid(self.theme.edge, 1.0) } else { hairline };
             self.segment(Point::new(left, y), Point::new(right, y), stroke);
             let at = Point::new(left - 6.0, y);
@@ -240,8 +183,21 @@ impl Plot<'_> {
         self.segment(Point::new(left, bottom), Point::new(right, bottom), base);
     }
 
-    /// Lines at the radii of both ends, named where the curve leaves room.
-    fn radii(&mut self, ends: &scenario::report::Ends, columns: &Columns) {
+    /// What an end's orbit of some eccentricity spans, between its nearest and farthest distance.
+    fn bands(&mut self, ends: &Ends) {
+        let Rect { left, width, .. } = self.frame;
+        for (nearest, farthest, _) in end_ranges(ends).into_iter().filter(|(near, far, _)| near < far) {
+            let (top, bottom) = (self.px(0.0, farthest).y, self.px(0.0, nearest).y);
+            let color = self.theme.hairline.towards(self.theme.sheet, 0.55);
+            self.shapes.push(Shape::Polygon {
+                points: Rect { left, top, width, height: (bottom - top).max(1.0) }.corners(),
+                color,
+            });
+        }
+    }
+
+    /// Lines at the distances of both ends (bands for ellipses stand already), named where the curve leaves room.
+    fn end_distances(&mut self, ends: &Ends, columns: &Columns) {
         let Rect { left, width, .. } = self.frame;
         let mut room = Room::new(self.frame);
         let curve: Vec<Point> =
@@ -251,11 +207,13 @@ impl Plot<'_> {
         }
         let style = Style { size: TICK_SIZE, color: self.theme.muted, weight: Weight::Normal };
         let mut names = Vec::new();
-        for (radius, end) in circle_radii(ends) {
-            let y = self.px(0.0, radius).y;
-            let line = [Point::new(left, y), Point::new(left + width, y)];
-            room.draw_line(&line, 0.05);
-            self.segment(line[0], line[1], Stroke::solid(self.theme.edge, 1.0));
+        for (nearest, farthest, end) in end_ranges(ends) {
+            let y = self.px(0.0, (nearest + farthest) / 2.0).y;
+            if nearest == farthest {
+                let line = [Point::new(left, y), Point::new(left + width, y)];
+                room.draw_line(&line, 0.05);
+                self.segment(line[0], line[1], Stroke::solid(self.theme.edge, 1.0));
+            }
             names.push((y, end.name.clone()));
         }
         for (y, name) in names {
@@ -271,24 +229,38 @@ impl Plot<'_> {
         }
     }
 
-    /// The curve, broken where there is no value; a jump (two samples at one time) is a thin dotted line.
+    /// The curve, broken where there is no value; a jump (two samples at one time) is a thin dotted line. An angle
+    /// that passes 180 deg leaves at one edge and goes on at the other.
     fn curve(&mut self, t_d: &[f64], quantity: &Quantity) {
         let solid = Stroke::solid(self.theme.sail, 1.8);
         let dotted = Stroke::dashed(self.theme.sail, 1.0, (2.0, 3.0));
         let mut run: Vec<Point> = Vec::new();
         let mut runs: Vec<Vec<Point>> = Vec::new();
-        for (i, (&t, &value)) in t_d.iter().zip(quantity.values).enumerate() {
-            let jump = i > 0 && t == t_d[i - 1] && quantity.kind == Kind::Angle;
+        let mut before: Option<(f64, f64)> = None;
+        for (&t, &value) in t_d.iter().zip(quantity.values) {
             if !(value.is_finite() && t.is_finite()) {
                 runs.push(std::mem::take(&mut run));
+                before = None;
                 continue;
             }
             let here = self.px(t, value);
-            if let Some(&last) = run.last().filter(|_| jump) {
-                self.segment(last, here, dotted);
-                runs.push(std::mem::take(&mut run));
+            if let Some((t0, v0)) = before {
+                let jump = t == t0 && value != v0;
+                let wraps = quantity.kind == Kind::Wrapped && (value - v0).abs() > 180.0;
+                if jump {
+                    self.segment(self.px(t0, v0), here, dotted);
+                    runs.push(std::mem::take(&mut run));
+                } else if wraps {
+                    let edge = 180.0_f64.copysign(v0);
+                    let gone = (edge - v0) / (value + 2.0 * edge - v0);
+                    let crossing = t0 + (t - t0) * gone;
+                    run.push(self.px(crossing, edge));
+                    runs.push(std::mem::take(&mut run));
+                    run.push(self.px(crossing, -edge));
+                }
             }
             run.push(here);
+            before = Some((t, value));
         }
         runs.push(run);
         for run in runs {
@@ -312,6 +284,9 @@ impl Plot<'_> {
             y_min: self.scale.min,
             y_max: self.scale.max,
             y_log: self.scale.log,
+            project: None,
+            center_x: None,
+            center_y: None,
         }
     }
 }

@@ -5,9 +5,12 @@
 //! Figures hold no number that is not in the report or its columns.
 
 mod axis;
+mod bodies;
+mod calendar;
 mod describe;
 mod ellipse;
 mod geometry;
+mod heights;
 mod histories;
 mod labels;
 #[cfg(test)]
@@ -18,12 +21,14 @@ mod notes;
 mod orbit;
 mod orbit_labels;
 mod paint;
+mod panels;
 #[cfg(test)]
 #[path = "../tests/sample/mod.rs"]
 mod sample;
 mod shapes;
 mod svg;
 mod theme;
+mod told;
 mod track;
 mod view;
 
@@ -39,8 +44,21 @@ pub use theme::{Color, DARK, LIGHT, Theme, ThemeName, tokens};
 /// Names of the figures.
 pub const NAMES: &[&str] = &["orbit", "histories"];
 
+/// Columns that can be a panel of the histories.
+pub const PANELS: &[&str] = &[
+    "cone_deg",
+    "clock_deg",
+    "distance_au",
+    "speed_km_s",
+    "turn_rate_deg_d",
+    "film_temp_k",
+    "sail_accel_mm_s2",
+    "earth_range_au",
+    "sun_earth_craft_deg",
+];
+
 /// How a figure is drawn.
-#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 #[serde(default)]
 pub struct FigureOptions {
     /// Width, CSS pixels, 120-8000.
@@ -53,10 +71,21 @@ pub struct FigureOptions {
     pub theme: ThemeName,
     /// Magnification of the orbit picture; 1 shows all of it, 0.1-1000.
     pub zoom: f64,
-    /// Where the orbit picture's centre moves to along ecliptic x, au; 0 for the whole picture.
+    /// Where the orbit picture's centre moves to the right, au; 0 for the whole picture. Untilted and unturned that is
+    /// along ecliptic x.
     pub pan_x_au: f64,
-    /// The same along ecliptic y (up), au.
+    /// The same upwards, au; untilted and unturned along ecliptic y.
     pub pan_y_au: f64,
+    /// Angle between ecliptic north and the direction from which the orbit picture is seen, deg: 0 from north, 90
+    /// edge-on with north up.
+    pub tilt_deg: f64,
+    /// Angle by which the orbit picture is turned about ecliptic north, counter-clockwise, deg, -3600 to 3600.
+    pub turn_deg: f64,
+    /// Time since departure at which the orbit picture shows both bodies of a dated flight, d.
+    pub cursor_t_d: Option<f64>,
+    /// Panels of the histories from top to bottom, of [`PANELS`]; none for the usual ones: cone angle (and clock
+    /// angle in space), distance, speed, turn rate.
+    pub panels: Vec<String>,
     /// Whether the report no longer matches the inputs: the figure is greyed and says so.
     pub stale: bool,
 }
@@ -71,16 +100,26 @@ impl Default for FigureOptions {
             zoom: 1.0,
             pan_x_au: 0.0,
             pan_y_au: 0.0,
+            tilt_deg: 0.0,
+            turn_deg: 0.0,
+            cursor_t_d: None,
+            panels: Vec::new(),
             stale: false,
         }
     }
 }
 
-/// The height that suits a figure of this width, CSS pixels; `None` for an unknown name.
-pub fn usual_height(name: &str, width: f64) -> Option<f64> {
+/// The panels that the histories of a flight show unless others are asked for.
+pub fn usual_panels(report: &Report, columns: &Columns) -> &'static [&'static str] {
+    panels::usual(track::is_spatial(report, columns))
+}
+
+/// The height that suits a figure of this width and, for the histories, so many panels, CSS pixels; `None` for an
+/// unknown name.
+pub fn usual_height(name: &str, width: f64, panels: usize) -> Option<f64> {
     match name {
         "orbit" => Some(width),
-        "histories" => Some((width * 0.75).clamp(480.0, 640.0)),
+        "histories" => Some(panels.max(1) as f64 * (width * 0.1875).clamp(120.0, 160.0)),
         _ => None,
     }
 }
@@ -95,8 +134,11 @@ pub struct FigureMap {
 /// One panel: a rectangle in CSS pixels and the data range that it shows.
 ///
 /// The left edge is `x_min`, the bottom edge `y_min`. In `histories` x is the time since departure (d) and y the
-/// panel's column. In `orbit` the single panel is named `y_au`: x and y are ecliptic coordinates (au), and both have
-/// the same scale.
+/// panel's column. In `orbit` the single panel is named `y_au`: x and y are distances to the right and up from the Sun
+/// as the picture shows it (au), both to the same scale; untilted and unturned they are ecliptic x and y.
+///
+/// A heliocentric position (ecliptic x, y, z in au) is drawn `project[0] x + project[1] y + project[2] z` to the right
+/// of `center_x` and `project[3] x + project[4] y + project[5] z` below `center_y`.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 pub struct Panel {
     /// Name of the column on the y axis.
@@ -121,6 +163,12 @@ pub struct Panel {
     pub y_max: f64,
     /// Whether y is logarithmic: equal heights are equal ratios.
     pub y_log: bool,
+    /// Orbit picture: the 2 x 3 matrix of its projection, row by row, CSS pixels per au; null in other figures.
+    pub project: Option<[f64; 6]>,
+    /// Orbit picture: where the Sun is drawn, CSS pixels from the left, whether inside or not.
+    pub center_x: Option<f64>,
+    /// The same from the top.
+    pub center_y: Option<f64>,
 }
 
 /// A figure ready to paint.
@@ -145,6 +193,8 @@ pub struct Figure {
 pub enum FigureError {
     /// No figure has this name.
     UnknownName(String),
+    /// No panel of the histories has this name.
+    UnknownPanel(String),
     /// An option is outside its range: its name, its value and the rule.
     Option {
         /// Which option.
@@ -171,6 +221,9 @@ impl std::fmt::Display for FigureError {
             FigureError::UnknownName(name) => {
                 write!(f, "no figure is called {name:?}; there are {}", NAMES.join(", "))
             }
+            FigureError::UnknownPanel(name) => {
+                write!(f, "panels: no panel is called {name:?}; there are {}", PANELS.join(", "))
+            }
             FigureError::Option { name, value, rule } => write!(f, "{name} {value}: {rule}"),
             FigureError::ColumnLength { name, found, wanted } => {
                 write!(f, "column {name} has {found} values for {wanted} times")
@@ -187,7 +240,7 @@ impl std::error::Error for FigureError {}
 /// CSS pixels, y down; data as in the columns.
 ///
 /// # Errors
-/// An unknown name, a size, zoom or pan outside its range, or columns of unequal lengths. A report without a flight
+/// An unknown figure or panel, an option outside its range, or columns of unequal lengths. A report without a flight
 /// is no error: the figure shows what is known and says so.
 pub fn layout(
     name: &str,
@@ -197,13 +250,13 @@ pub fn layout(
 ) -> Result<Figure, FigureError> {
     check_options(options)?;
     check_columns(columns)?;
-    let description = describe(name, report, columns)?;
+    let description = describe::describe_with(name, report, columns, options)?;
     let theme = Theme::named(options.theme);
     let theme = if options.stale { theme.greyed() } else { *theme };
     let ends = &report.ends;
     let (title, drawing) = match name {
         "orbit" => ("Orbit picture", orbit::draw(report, columns, options, &theme)),
-        "histories" => ("Histories", histories::draw(report, columns, options, &theme)),
+        "histories" => ("Histories", histories::draw(report, columns, options, &theme)?),
         _ => return Err(FigureError::UnknownName(name.to_owned())),
     };
     Ok(Figure {
@@ -231,7 +284,11 @@ fn check_options(options: &FigureOptions) -> Result<(), FigureError> {
     within("height", options.height, 120.0, 8000.0, "120 to 8000 CSS pixels")?;
     within("zoom", options.zoom, 0.1, 1000.0, "0.1 to 1000")?;
     within("pan_x_au", options.pan_x_au, -1000.0, 1000.0, "-1000 to 1000 au")?;
-    within("pan_y_au", options.pan_y_au, -1000.0, 1000.0, "-1000 to 1000 au")
+    within("pan_y_au", options.pan_y_au, -1000.0, 1000.0, "-1000 to 1000 au")?;
+    within("tilt_deg", options.tilt_deg, 0.0, 90.0, "0 to 90 deg")?;
+    within("turn_deg", options.turn_deg, -3600.0, 3600.0, "-3600 to 3600 deg")?;
+    // Far beyond any flight; farther off, whole turns of the bodies would lose their digits.
+    within("cursor_t_d", options.cursor_t_d.unwrap_or(0.0), -1e7, 1e7, "-1e7 to 1e7 d")
 }
 
 fn check_columns(columns: &Columns) -> Result<(), FigureError> {

@@ -118,10 +118,10 @@ pub(crate) fn bars(places: &[Place], plan: BarPlan, kept_free: &[Point], ticks: 
     chosen
 }
 
-/// The sail as the reader sees it, a round plate of the given radius, with its normal as an arrow on the side away
-/// from the Sun. Seen from its edge it is a bar, the first shape, from its left end to its right end as seen along
-/// the normal; else the plate's outline is, and the arrow comes before it where it points away from the reader.
-pub(crate) fn sail_mark(place: &Place, radius_px: f64, color: Color, face: Color) -> Vec<Shape> {
+/// The sail as the reader sees it, with its normal as an arrow on the side away from the Sun: a round plate, or from
+/// its edge a bar of the given half length. The bar is the first shape, from its left end to its right end as seen
+/// along the normal; the arrow of a plate comes before it where it points away from the reader.
+pub(crate) fn sail_mark(place: &Place, half_px: f64, color: Color, face: Color) -> Vec<Shape> {
     let Some(Attitude { normal, .. }) = place.attitude else { return Vec::new() };
     let in_picture = normal[0].hypot(normal[1]);
     let n = if in_picture > 1e-6 {
@@ -130,8 +130,10 @@ pub(crate) fn sail_mark(place: &Place, radius_px: f64, color: Color, face: Color
         Point::new(0.0, -1.0)
     };
     let left = Point::new(n.y, -n.x);
-    let open_px = radius_px * normal[2].abs();
-    let length_px = radius_px * 1.5 * in_picture;
+    let length_px = half_px * 1.5 * in_picture;
+    // A plate looks heavier than a bar.
+    let plate_px = 0.8 * half_px;
+    let open_px = plate_px * normal[2].abs();
     let mut arrow = Vec::new();
     if length_px > 5.0 {
         let tip = place.at.shifted(n, length_px);
@@ -139,14 +141,14 @@ pub(crate) fn sail_mark(place: &Place, radius_px: f64, color: Color, face: Color
         arrow.push(Shape::Polygon { points: arrow_head(tip, n, 5.0), color });
     }
     if open_px < 1.5 {
-        let points = vec![place.at.shifted(left, radius_px), place.at.shifted(left, -radius_px)];
+        let points = vec![place.at.shifted(left, half_px), place.at.shifted(left, -half_px)];
         let bar = Shape::Polyline { points, stroke: Stroke::solid(color, 3.0) };
         return std::iter::once(bar).chain(arrow).collect();
     }
     let outline: Vec<Point> = (0..=28)
         .map(|k| {
             let (sin, cos) = (std::f64::consts::TAU * f64::from(k) / 28.0).sin_cos();
-            place.at.shifted(left, radius_px * cos).shifted(n, open_px * sin)
+            place.at.shifted(left, plate_px * cos).shifted(n, open_px * sin)
         })
         .collect();
     let plate = [
@@ -245,11 +247,11 @@ mod tests {
     }
 
     #[test]
-    fn a_plate_is_as_wide_as_its_radius_says_and_as_open_as_its_normal_faces_the_reader() {
+    fn a_plate_is_as_open_as_its_normal_faces_the_reader() {
         let shapes = sail_mark(&seen([0.8, 0.0, 0.6]), 10.0, LIGHT.sail, LIGHT.sheet);
         let Shape::Polygon { points, .. } = &shapes[0] else { panic!("the face comes first: {shapes:?}") };
         let reach = |of: fn(&Point) -> f64| points.iter().map(of).fold(0.0, f64::max);
-        assert!((reach(|p| p.y) - 10.0).abs() < 1e-9 && (reach(|p| p.x) - 6.0).abs() < 1e-9);
+        assert!((reach(|p| p.y) - 8.0).abs() < 1e-9 && (reach(|p| p.x) - 4.8).abs() < 1e-9);
     }
 
     #[test]

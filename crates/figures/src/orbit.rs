@@ -4,13 +4,14 @@ use scenario::report::{Columns, End, Report};
 
 use crate::ellipse::{corners, half_ellipse, orbit};
 use crate::geometry::{Rect, clip, reduce};
+use crate::heights::Heights;
 use crate::labels::Room;
-use crate::marks::{BarPlan, Ticks, arrow_head, arrows, bars, sail_bar, ticks};
+use crate::marks::{BarPlan, Ticks, arrow_head, arrows, bars, sail_mark, ticks};
 use crate::notes;
 use crate::shapes::{Point, Shape, Stroke, Text};
 use crate::theme::{Color, Theme};
-use crate::track::{Place, heading, track};
-use crate::view::View;
+use crate::track::{Place, distances, heading, is_spatial, position, track};
+use crate::view::{Aspect, View};
 use crate::{Drawing, FigureOptions, Panel};
 
 /// How far a drawn line may be from the true one, CSS pixels.
@@ -35,8 +36,11 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
     let sentences = notes::sentences(report, columns, options.stale);
     let used = notes::set(&mut top, &sentences, whole.grown(-10.0), theme);
     let small = options.width.min(options.height) < 480.0;
-    let view =
-        fitted(report, columns, whole, used, small).moved(options.zoom, [options.pan_x_au, options.pan_y_au]);
+    let below = if used > 0.0 { used + 8.0 } else { 0.0 };
+    let free = Rect { top: below, height: whole.height - below, ..whole };
+    let aspect = Aspect { tilt_deg: options.tilt_deg, turn_deg: options.turn_deg };
+    let view = fitted(report, columns, [whole, free], small, aspect)
+        .moved(options.zoom, [options.pan_x_au, options.pan_y_au]);
     let mut sheet =
         Sheet { shapes: Vec::new(), labels: Vec::new(), room: Room::new(whole), view, theme, small };
     if used > 0.0 {
@@ -46,28 +50,41 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
 
     let (from, to) = (&report.ends.from, &report.ends.to);
     let places = track(columns, &view);
-    let from_line = sheet.ellipse(from);
-    let to_line = sheet.ellipse(to);
+    let heights = Heights::of(report, columns);
+    let rings_au = sheet.rings(&heights, [from, to]);
+    sheet.node_lines([from, to]);
+    let from_line = sheet.ellipse(from, &heights);
+    let to_line = sheet.ellipse(to, &heights);
     let pitch_px = pitch(report, columns, &view);
     let crowded = pitch_px < CROWDED;
-    sheet.way(&places, pitch_px);
-    let impulsive = sheet.impulsive(report, columns);
+    let ticks = sheet.find_ticks(&places, crowded);
+    sheet.drop_lines(&heights, &places, &ticks);
+    sheet.way(&places, pitch_px, &heights);
+    let impulsive = if is_spatial(report, columns) { Vec::new() } else { sheet.impulsive(report, columns) };
     sheet.sun(report);
+    let bodies = sheet.bodies(report, &places);
     let marks = sheet.ends(&places);
-    let ticks = sheet.ticks(&places, crowded);
+    sheet.ticks(&places, &ticks, crowded);
     sheet.attitudes(&places, crowded, &marks, &ticks);
     sheet.orbit_arrow(&from_line, &marks);
     sheet.orbit_arrow(&to_line, &marks);
+    let tops = sheet.tops(&heights, &places, &marks);
 
     sheet.scale_bar();
-    sheet.caption(&ticks);
-    sheet.end_labels(&places, report);
+    sheet.captions(&ticks, rings_au, heights.matter, options);
+    sheet.end_labels(&places, report, &bodies);
     let outer_first = to.semi_major_axis_au >= from.semi_major_axis_au;
     sheet.orbit_label(to, &to_line, outer_first);
     sheet.orbit_label(from, &from_line, !outer_first);
     sheet.line_labels(report, &places, &impulsive);
+    sheet.body_labels(&bodies);
+    sheet.top_labels(&tops);
     sheet.tick_labels(&ticks);
     sheet.sun_label();
+    // Last, so that nothing else moves with the cursor.
+    if let Some(t_d) = options.cursor_t_d {
+        sheet.cursor(report, t_d);
+    }
 
     let mut shapes = sheet.shapes;
     shapes.extend(sheet.labels.into_iter().map(Shape::Text));
@@ -80,13 +97,13 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
 }
 
 /// The view of everything there is, below the sentences.
-fn fitted(report: &Report, columns: &Columns, whole: Rect, used: f64, small: bool) -> View {
-    let below = if used > 0.0 { used + 8.0 } else { 0.0 };
-    let free = Rect { top: below, height: whole.height - below, ..whole };
+fn fitted(report: &Report, columns: &Columns, frames: [Rect; 2], small: bool, aspect: Aspect) -> View {
+    let [whole, free] = frames;
     let ends = [&report.ends.from, &report.ends.to];
     let curves = ends.into_iter().flat_map(|end| orbit(end, 180));
-    let samples = columns.x_au.iter().zip(&columns.y_au).map(|(&x, &y)| [x, y]);
-    let view = View::fitting(curves.chain(samples), free, if small { 22.0 } else { 30.0 });
+    let samples = (0..columns.t_d.len()).map(|row| position(columns, row));
+    let points: Vec<[f64; 3]> = curves.chain(samples).collect();
+    let view = View::fitting(&points, aspect, free, if small { 22.0 } else { 30.0 });
     // The whole picture shows the same view, shifted so that the free part keeps its centre.
     let lift = (free.centre().y - whole.centre().y) / view.px_per_au;
     View { frame: whole, centre_au: [view.centre_au[0], view.centre_au[1] + lift], ..view }
@@ -96,15 +113,32 @@ fn panel(view: &View) -> Panel {
     let [x_min, x_max, y_min, y_max] = view.range_au();
     let Rect { left, top, width, height } = view.frame;
     let (column, unit) = ("y_au".to_owned(), "au".to_owned());
-    Panel { column, unit, left, top, width, height, x_min, x_max, y_min, y_max, y_log: false }
+    let (project, sun) = (Some(view.matrix()), view.sun());
+    let (center_x, center_y) = (Some(sun.x), Some(sun.y));
+    let y_log = false;
+    Panel {
+        column,
+        unit,
+        left,
+        top,
+        width,
+        height,
+        x_min,
+        x_max,
+        y_min,
+        y_max,
+        y_log,
+        project,
+        center_x,
+        center_y,
+    }
 }
 
 /// Distance between neighbouring turns of the sail's way, CSS pixels; infinite for less than a turn and a half.
 fn pitch(report: &Report, columns: &Columns, view: &View) -> f64 {
     let turns = report.flight.revolutions.unwrap_or(0.0);
-    let distances =
-        columns.x_au.iter().zip(&columns.y_au).map(|(x, y)| x.hypot(*y)).filter(|r| r.is_finite());
-    let (low, high) = distances.fold((f64::INFINITY, 0.0_f64), |(a, b), r| (a.min(r), b.max(r)));
+    let found = distances(columns).filter(|r| r.is_finite());
+    let (low, high) = found.fold((f64::INFINITY, 0.0_f64), |(a, b), r| (a.min(r), b.max(r)));
     if turns < 1.5 || low > high { f64::INFINITY } else { (high - low) * view.px_per_au / turns }
 }
 
@@ -114,7 +148,7 @@ impl Sheet<'_> {
     }
 
     /// Draws the visible pieces of a line and returns them.
-    fn line(&mut self, points: &[Point], stroke: Stroke, weight: f32) -> Vec<Vec<Point>> {
+    pub(crate) fn line(&mut self, points: &[Point], stroke: Stroke, weight: f32) -> Vec<Vec<Point>> {
         let pieces: Vec<Vec<Point>> = clip(points, &self.view.frame.grown(4.0))
             .into_iter()
             .map(|piece| reduce(&piece, TOLERANCE))
@@ -126,10 +160,12 @@ impl Sheet<'_> {
         pieces
     }
 
-    fn ellipse(&mut self, end: &End) -> Vec<Vec<Point>> {
-        let count = corners(end.semi_major_axis_au * self.view.px_per_au);
-        let points: Vec<Point> = orbit(end, count).into_iter().map(|au| self.view.px(au)).collect();
-        self.line(&points, Stroke::solid(self.theme.edge, 1.2), 1.5)
+    fn ellipse(&mut self, end: &End, heights: &Heights) -> Vec<Vec<Point>> {
+        let points = orbit(end, corners(end.semi_major_axis_au * self.view.px_per_au));
+        let edge = self.theme.edge;
+        let [north, south] = if heights.shown_by(&points) { [1.7, 0.8] } else { [1.2; 2] };
+        let strokes = [Stroke::solid(edge, north), Stroke::solid(edge, south)];
+        self.split_line(&points, strokes, 1.5)
     }
 
     fn impulsive(&mut self, report: &Report, columns: &Columns) -> Vec<Vec<Point>> {
@@ -148,15 +184,18 @@ impl Sheet<'_> {
         self.line(&points, Stroke::dashed(self.theme.impulse, 1.6, (7.0, 5.0)), 2.0)
     }
 
-    fn way(&mut self, places: &[Place], pitch_px: f64) {
-        let points: Vec<Point> = places.iter().map(|place| place.at).collect();
+    fn way(&mut self, places: &[Place], pitch_px: f64, heights: &Heights) {
+        let points: Vec<[f64; 3]> = places.iter().map(|place| place.position_au).collect();
         // Many turns become a tint rather than a slab.
         let width = (pitch_px * 0.3).clamp(0.5, 2.2);
-        self.line(&points, Stroke::solid(self.theme.sail, width), 3.0);
+        let [north, south] = if heights.shown_by(&points) { [1.15, 0.55] } else { [1.0; 2] };
+        let sail = self.theme.sail;
+        let strokes = [Stroke::solid(sail, width * north), Stroke::solid(sail, width * south)];
+        self.split_line(&points, strokes, 3.0);
     }
 
     fn sun(&mut self, report: &Report) {
-        let sun = self.view.px([0.0, 0.0]);
+        let sun = self.view.sun();
         if !self.view.frame.grown(-8.0).contains(sun) {
             return;
         }
@@ -202,10 +241,13 @@ impl Sheet<'_> {
         marks
     }
 
-    fn ticks(&mut self, places: &[Place], crowded: bool) -> Ticks {
+    fn find_ticks(&self, places: &[Place], crowded: bool) -> Ticks {
         let most = if self.small { 15 } else { 24 };
-        let found = ticks(places, if crowded { 10 } else { most }, if crowded { 22.0 } else { 9.0 });
-        for place in found.places.iter().filter(|place| self.view.frame.contains(place.at)) {
+        ticks(places, if crowded { 10 } else { most }, if crowded { 22.0 } else { 9.0 })
+    }
+
+    fn ticks(&mut self, places: &[Place], ticks: &Ticks, crowded: bool) {
+        for place in ticks.places.iter().filter(|place| self.view.frame.contains(place.at)) {
             let stroke = Stroke::solid(self.theme.sail, 1.2);
             if crowded {
                 self.shapes.push(Shape::Disc { centre: place.at, radius: 3.0, color: self.theme.sheet });
@@ -216,7 +258,6 @@ impl Sheet<'_> {
                 self.shapes.push(Shape::Polyline { points, stroke });
             }
         }
-        found
     }
 
     fn attitudes(&mut self, places: &[Place], crowded: bool, marks: &[Point], ticks: &Ticks) {
@@ -224,7 +265,6 @@ impl Sheet<'_> {
             most: if crowded || self.small { 12 } else { 24 },
             spacing_px: if self.small { 58.0 } else { 96.0 },
             gap_px: if self.small { 24.0 } else { 30.0 },
-            sun: self.view.px([0.0, 0.0]),
         };
         let half_px = if self.small { 8.0 } else { 10.0 };
         let frame = self.view.frame.grown(-half_px * 1.5);
@@ -233,8 +273,9 @@ impl Sheet<'_> {
             .into_iter()
             .filter(|place| frame.contains(place.at))
             .collect();
+        let (sail, face) = (self.theme.sail, self.theme.sail.towards(self.theme.sheet, 0.75));
         for place in &seen {
-            let shapes = sail_bar(place, half_px, self.theme.sail);
+            let shapes = sail_mark(place, half_px, sail, face);
             for shape in &shapes {
                 if let Shape::Polyline { points, stroke } = shape {
                     self.room.draw_line(points, 4.0);

@@ -2,7 +2,10 @@
 
 use scenario::report::{End, Report};
 
+use crate::FigureOptions;
 use crate::axis::number;
+use crate::bodies::{BodyMark, body_name};
+use crate::calendar::day;
 use crate::geometry::{Rect, clip};
 use crate::labels::{Style, beside};
 use crate::marks::Ticks;
@@ -13,10 +16,15 @@ use crate::theme::Color;
 use crate::track::Place;
 
 /// How much of the weights in `Room` an ordinary label may cover; above it the label is left out.
-const COVER: f64 = 5.0;
+pub(crate) const COVER: f64 = 5.0;
 
 /// Orbits smaller than this (CSS pixels) have no room for a name of their own.
 const NAMELESS: f64 = 36.0;
+
+/// A round number without needless decimals.
+fn short(value: f64) -> String {
+    number(value, (-value.log10().floor()).clamp(0.0, 9.0) as usize)
+}
 
 /// The orbit's name on the picture.
 fn orbit_name(end: &End) -> String {
@@ -30,8 +38,7 @@ impl Sheet<'_> {
         let length_au =
             [5.0, 2.0, 1.0].map(|m| m * decade).into_iter().find(|l| *l <= longest_au * 1.000_001);
         let length_au = length_au.unwrap_or(decade);
-        let decimals = (-length_au.log10().floor()).clamp(0.0, 9.0) as usize;
-        let content = format!("{} au", number(length_au, decimals));
+        let content = format!("{} au", short(length_au));
         let length = length_au * self.view.px_per_au;
         let (left, base) = (12.0, self.view.frame.bottom() - 12.0);
         let (size, muted) = (11.0, self.theme.muted);
@@ -49,37 +56,61 @@ impl Sheet<'_> {
         self.labels.push(Text { at, content, anchor, size, color: muted, weight: Weight::Normal });
     }
 
-    pub(crate) fn caption(&mut self, ticks: &Ticks) {
-        if ticks.places.is_empty() {
-            return;
+    /// What the marks mean and where the picture is seen from, in the corner; a small picture has room for less.
+    pub(crate) fn captions(
+        &mut self,
+        ticks: &Ticks,
+        rings_au: Option<f64>,
+        heights: bool,
+        options: &FigureOptions,
+    ) {
+        let mut lines = Vec::new();
+        if !ticks.places.is_empty() {
+            let mark = if ticks.interval_d < 365.0 { "ticks" } else { "marks" };
+            lines.push(format!("{mark} every {}", ticks.words));
         }
-        let mark = if ticks.interval_d < 365.0 { "ticks" } else { "marks" };
-        let text = Text {
-            at: Point::new(self.view.frame.right() - 12.0, self.view.frame.bottom() - 14.0),
-            content: format!("{mark} every {}", ticks.words),
-            anchor: Anchor::End,
-            size: 11.0,
-            color: self.theme.muted,
-            weight: Weight::Normal,
-        };
-        let area = text_box(&text).grown(3.0);
-        self.fill(area, self.theme.sheet);
-        self.room.take(area);
-        self.labels.push(text);
-    }
-
-    /// Sets a label; where it covers a line, the line is interrupted as on a map.
-    fn label(&mut self, content: &str, style: Style, candidates: Vec<Point>, most: f64) {
-        if let Some(text) = self.room.place(content, style, candidates, most) {
-            let area = text_box(&text);
-            if self.room.covers(&area) {
-                self.fill(Rect { height: area.height - 2.0, top: area.top + 1.0, ..area }, self.theme.sheet);
+        if let Some(step_au) = rings_au.filter(|_| !self.small) {
+            lines.push(format!("ecliptic rings every {} au", short(step_au)));
+        }
+        if heights && !self.small {
+            lines.push("thin: south of the ecliptic".to_owned());
+        }
+        if options.tilt_deg > 0.0 {
+            lines.push(format!("{}° from ecliptic north", number(options.tilt_deg, 0)));
+        }
+        let (right, bottom) = (self.view.frame.right() - 12.0, self.view.frame.bottom() - 14.0);
+        for (k, content) in lines.into_iter().enumerate() {
+            let text = Text {
+                at: Point::new(right, bottom - 15.0 * k as f64),
+                content,
+                anchor: Anchor::End,
+                size: 11.0,
+                color: self.theme.muted,
+                weight: Weight::Normal,
+            };
+            let area = text_box(&text).grown(3.0);
+            if !self.room.is_free(&area.grown(-3.0)) {
+                return;
             }
+            self.fill(area, self.theme.sheet);
+            self.room.take(area.grown(-1.5));
             self.labels.push(text);
         }
     }
 
-    fn style(&self, color: Color) -> Style {
+    /// Sets a label; where it covers a line, the line is interrupted as on a map.
+    /// Whether there was room for it.
+    pub(crate) fn label(&mut self, content: &str, style: Style, candidates: Vec<Point>, most: f64) -> bool {
+        let Some(text) = self.room.place(content, style, candidates, most) else { return false };
+        let area = text_box(&text);
+        if self.room.covers(&area) {
+            self.fill(Rect { height: area.height - 2.0, top: area.top + 1.0, ..area }, self.theme.sheet);
+        }
+        self.labels.push(text);
+        true
+    }
+
+    pub(crate) fn style(&self, color: Color) -> Style {
         Style { size: 12.0, color, weight: Weight::Normal }
     }
 
@@ -87,18 +118,29 @@ impl Sheet<'_> {
         end.semi_major_axis_au * self.view.px_per_au < NAMELESS
     }
 
-    /// Names of departure and arrival; they take the orbit's name along where the orbit is too small for it.
-    pub(crate) fn end_labels(&mut self, places: &[Place], report: &Report) {
+    /// Names of departure and arrival, with their dates where there are some; they take the orbit's name along where
+    /// the orbit is too small for it.
+    pub(crate) fn end_labels(&mut self, places: &[Place], report: &Report, bodies: &[BodyMark]) {
         let (Some(first), Some(last)) = (places.first(), places.last()) else { return };
-        let sun = self.view.px([0.0, 0.0]);
+        let sun = self.view.sun();
         let style = self.style(self.theme.ink);
-        for (place, word, end) in
-            [(last, "arrival", &report.ends.to), (first, "departure", &report.ends.from)]
-        {
+        let flight = &report.flight;
+        let met = bodies.iter().any(|body| body.met);
+        let meeting = format!("meets {}", body_name(&report.ends.to, false));
+        let arrival = if met { meeting.as_str() } else { "arrival" };
+        for (place, word, end, date) in [
+            (last, arrival, &report.ends.to, day(flight.arrive.as_deref())),
+            (first, "departure", &report.ends.from, day(flight.depart.as_deref())),
+        ] {
             let name = if self.is_nameless(end) { format!(", {}", orbit_name(end)) } else { String::new() };
-            let content = format!("{word}{name}");
+            let short = format!("{word}{name}");
+            let long = date.filter(|_| !self.small).map(|date| format!("{short}, {date}"));
             let out = Point::new(place.at.x - sun.x, place.at.y - sun.y);
-            self.label(&content, style, beside(place.at, out, 9.0, &content, style), f64::INFINITY);
+            for content in long.iter().chain([&short]) {
+                if self.label(content, style, beside(place.at, out, 9.0, content, style), f64::INFINITY) {
+                    break;
+                }
+            }
         }
     }
 
@@ -143,7 +185,7 @@ impl Sheet<'_> {
             return;
         };
         let style = Style { size: 11.0, color: self.theme.muted, weight: Weight::Normal };
-        let sun = self.view.px([0.0, 0.0]);
+        let sun = self.view.sun();
         for place in ticks.places.iter().skip(every - 1).step_by(every) {
             let content = ticks.label(place.t_d);
             let out = Point::new(place.at.x - sun.x, place.at.y - sun.y);
@@ -153,7 +195,7 @@ impl Sheet<'_> {
     }
 
     pub(crate) fn sun_label(&mut self) {
-        let sun = self.view.px([0.0, 0.0]);
+        let sun = self.view.sun();
         let style = Style { size: 11.0, color: self.theme.muted, weight: Weight::Normal };
         self.label("Sun", style, beside(sun, Point::new(0.0, 1.0), 9.0, "Sun", style), 0.5);
     }
@@ -166,7 +208,7 @@ impl Sheet<'_> {
         style: Style,
         outside_first: bool,
     ) -> Vec<Point> {
-        let sun = self.view.px([0.0, 0.0]);
+        let sun = self.view.sun();
         let half_width = text_width(content, style.size, style.weight) / 2.0;
         let half_height = text_height(style.size) / 2.0;
         let mut candidates = Vec::new();

@@ -39,10 +39,7 @@ impl Attitude {
     fn between(from: Option<Attitude>, to: Option<Attitude>, s: f64) -> Option<Attitude> {
         let (from, to) = (from?, to?);
         let mix = |a: [f64; 3], b: [f64; 3]| unit(std::array::from_fn(|i| a[i] + s * (b[i] - a[i])));
-        Some(Attitude {
-            normal: mix(from.normal, to.normal)?,
-            in_orbit: mix(from.in_orbit, to.in_orbit)?,
-        })
+        Some(Attitude { normal: mix(from.normal, to.normal)?, in_orbit: mix(from.in_orbit, to.in_orbit)? })
     }
 }
 
@@ -61,8 +58,7 @@ pub(crate) fn attitude(columns: &Columns, row: usize) -> Option<Attitude> {
     if !cone.is_finite() {
         return None;
     }
-    let (sin_clock, cos_clock) =
-        if cone >= 0.0 && clock.is_finite() { clock.sin_cos() } else { (0.0, 1.0) };
+    let (sin_clock, cos_clock) = if cone >= 0.0 && clock.is_finite() { clock.sin_cos() } else { (0.0, 1.0) };
     let (sin, cos) = cone.sin_cos();
     let in_orbit = [cos, sin * cos_clock, sin * sin_clock];
     let normal =
@@ -85,8 +81,8 @@ pub(crate) fn position(columns: &Columns, row: usize) -> [f64; 3] {
 
 /// Velocity at a sample, km/s; NaN where there is none.
 fn velocity(columns: &Columns, row: usize) -> [f64; 3] {
-    [&columns.vx_km_s, &columns.vy_km_s, &columns.vz_km_s]
-        .map(|column| column.get(row).copied().unwrap_or(f64::NAN))
+    let value = |column: &[f64], missing| column.get(row).copied().unwrap_or(missing);
+    [value(&columns.vx_km_s, f64::NAN), value(&columns.vy_km_s, f64::NAN), value(&columns.vz_km_s, 0.0)]
 }
 
 /// Distance from the Sun at every sample, au.
@@ -128,7 +124,12 @@ pub(crate) fn track(columns: &Columns, view: &View) -> Vec<Place> {
             for k in 1..pieces {
                 let s = k as f64 / pieces as f64;
                 let turned = Attitude::between(attitude_before, attitude_here, s);
-                push(&mut places, columns.t_d[row - 1] + s * span_d, hermite(columns, row, span_d, s), turned);
+                push(
+                    &mut places,
+                    columns.t_d[row - 1] + s * span_d,
+                    hermite(columns, row, span_d, s),
+                    turned,
+                );
             }
         }
         push(&mut places, columns.t_d[row], here, attitude_here);
@@ -152,11 +153,7 @@ fn hermite(columns: &Columns, row: usize, span_d: f64, s: f64) -> [f64; 3] {
     let scale = span_d * AU_D_PER_KM_S;
     let (x0, x1) = (position(columns, row - 1), position(columns, row));
     let (v0, v1) = (velocity(columns, row - 1), velocity(columns, row));
-    std::array::from_fn(|i| {
-        let speed = h10 * v0[i] + h11 * v1[i];
-        // Without a velocity along this axis the line is straight.
-        if speed.is_finite() { h00 * x0[i] + h01 * x1[i] + scale * speed } else { x0[i] + s * (x1[i] - x0[i]) }
-    })
+    std::array::from_fn(|i| h00 * x0[i] + h01 * x1[i] + scale * (h10 * v0[i] + h11 * v1[i]))
 }
 
 /// The place at a time, linear between neighbours. `None` outside the flight.

@@ -37,7 +37,7 @@ pub(crate) struct View {
     /// What lies at the centre of the frame, au to the right and up from the Sun.
     pub(crate) centre_au: [f64; 2],
     /// The picture's axes in ecliptic axes: to the right, up, towards the reader.
-    axes: [[f64; 3]; 3],
+    pub(crate) axes: [[f64; 3]; 3],
 }
 
 impl View {
@@ -54,9 +54,7 @@ impl View {
             }
         }
         let centre: [f64; 3] = std::array::from_fn(|i| (low[i] + high[i]) / 2.0);
-        let distance = |point: &[f64; 3]| {
-            (0..3).map(|i| (point[i] - centre[i]).powi(2)).sum::<f64>().sqrt()
-        };
+        let distance = |point: &[f64; 3]| (0..3).map(|i| (point[i] - centre[i]).powi(2)).sum::<f64>().sqrt();
         let radius = finite().map(distance).fold(distance(&[0.0; 3]), f64::max);
         let radius = if radius > 0.0 { radius } else { 1.0 };
         let inside = frame.grown(-margin);

@@ -3,7 +3,7 @@
 mod sample;
 
 use figures::{FigureError, FigureOptions, NAMES, ThemeName, describe, layout, svg};
-use sample::{MARS, Spiral, flight, without_flight};
+use sample::{CROSSING, MARS, Spiral, crossing, flight, without_flight};
 use scenario::report::Status;
 
 #[test]
@@ -67,13 +67,20 @@ fn unknown_names_and_impossible_options_are_errors_that_name_them() {
         FigureError::UnknownName("pie".to_owned())
     );
     for (name, wrong) in [
-        ("width", FigureOptions { width: f64::NAN, ..options }),
-        ("height", FigureOptions { height: 3.0, ..options }),
-        ("zoom", FigureOptions { zoom: 0.0, ..options }),
-        ("pan_x_au", FigureOptions { pan_x_au: f64::INFINITY, ..options }),
+        ("width", FigureOptions { width: f64::NAN, ..options.clone() }),
+        ("height", FigureOptions { height: 3.0, ..options.clone() }),
+        ("zoom", FigureOptions { zoom: 0.0, ..options.clone() }),
+        ("tilt_deg", FigureOptions { tilt_deg: 91.0, ..options.clone() }),
+        ("turn_deg", FigureOptions { turn_deg: f64::NAN, ..options.clone() }),
+        ("cursor_t_d", FigureOptions { cursor_t_d: Some(f64::NAN), ..options.clone() }),
+        ("pan_x_au", FigureOptions { pan_x_au: f64::INFINITY, ..options.clone() }),
     ] {
         assert!(layout("orbit", &report, &columns, &wrong).unwrap_err().to_string().contains(name));
     }
+    let unknown = FigureOptions { panels: vec!["cone_deg".into(), "mood".into()], ..options.clone() };
+    let error = layout("histories", &report, &columns, &unknown).unwrap_err();
+    assert_eq!(error, FigureError::UnknownPanel("mood".to_owned()));
+    assert!(error.to_string().contains("film_temp_k"));
     let mut short = columns.clone();
     short.cone_deg.pop();
     assert!(layout("orbit", &report, &short, &options).unwrap_err().to_string().contains("cone_deg"));
@@ -85,4 +92,42 @@ fn options_cross_as_plain_objects_with_defaults_for_what_is_left_out() {
         serde_json::from_str(r#"{"width": 330, "theme": "dark", "stale": true}"#).unwrap();
     assert_eq!(options.theme, ThemeName::Dark);
     assert!(options.stale && options.width == 330.0 && options.zoom == 1.0);
+    assert!(options.tilt_deg == 0.0 && options.cursor_t_d.is_none() && options.panels.is_empty());
+}
+
+#[test]
+fn panels_come_as_asked() {
+    let (report, columns) = crossing(CROSSING);
+    let usual = ["cone_deg", "clock_deg", "distance_au", "speed_km_s", "turn_rate_deg_d"];
+    assert_eq!(figures::usual_panels(&report, &columns), usual);
+    for asked in [vec!["film_temp_k", "sail_accel_mm_s2", "cone_deg"], figures::PANELS.to_vec()] {
+        let panels: Vec<String> = asked.iter().map(|name| (*name).to_owned()).collect();
+        let height = figures::usual_height("histories", 760.0, panels.len()).unwrap();
+        let options = FigureOptions { panels, height, ..FigureOptions::default() };
+        let figure = layout("histories", &report, &columns, &options).unwrap();
+        let found: Vec<&str> = figure.map.panels.iter().map(|panel| panel.column.as_str()).collect();
+        assert_eq!(found, asked);
+        assert!(figure.map.panels.iter().all(|panel| panel.project.is_none() && panel.height > 40.0));
+    }
+}
+
+#[test]
+fn words_of_a_flight_in_space_tell_dates_heights_bodies_and_clock() {
+    let (report, columns) = crossing(CROSSING);
+    let orbit = describe("orbit", &report, &columns).unwrap();
+    for wanted in [
+        "semi-major axis 1.524 au, eccentricity 0.093, inclination 1.9°",
+        "It leaves on 2031-05-17 and arrives on 2032-09-20 (TDB).",
+        "au north of the ecliptic at day",
+        "au south of the ecliptic at day",
+        "the sail in ecliptic longitude at departure; they meet at arrival.",
+    ] {
+        assert!(orbit.contains(wanted), "{wanted}: {orbit}");
+    }
+    assert!(!orbit.contains("Hohmann"), "{orbit}");
+    let histories = describe("histories", &report, &columns).unwrap();
+    assert!(histories.contains("Clock angle rises from 60° to"), "{histories}");
+    let tilted = FigureOptions { tilt_deg: 60.0, ..FigureOptions::default() };
+    let figure = layout("orbit", &report, &columns, &tilted).unwrap();
+    assert!(figure.description.starts_with("Seen 60° from ecliptic north"), "{}", figure.description);
 }

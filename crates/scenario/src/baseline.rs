@@ -86,6 +86,8 @@ fn count(scenario: &Scenario) -> Result<Impulsive, BadArgument> {
         from_parking_note,
         lead_angle_deg: transfer.lead_angle_deg,
         synodic_d: transfer.synodic_d,
+        dated: None,
+        dated_same_dates: None,
     })
 }
 

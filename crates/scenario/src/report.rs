@@ -261,6 +261,74 @@ pub struct Impulsive {
     pub lead_angle_deg: f64,
     /// Time between departure windows, d; null for equal periods.
     pub synodic_d: Option<f64>,
+    /// The cheapest transfer between the orbits as they are, within a span of dates from the sail's departure on, counted
+    /// from the same start to the same end; null without a departure date.
+    pub dated: Option<DatedTransfer>,
+    /// The cheapest transfer that leaves and arrives when the sail does, counted alike; null without a date or a flight.
+    pub dated_same_dates: Option<DatedTransfer>,
+}
+
+/// A transfer of two impulses on calendar dates, between the orbits as they are.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct DatedTransfer {
+    /// Departure day, ISO 8601, TDB.
+    pub depart: String,
+    /// Arrival day, ISO 8601, TDB.
+    pub arrive: String,
+    /// Flight time, d.
+    pub time_d: f64,
+    /// First impulse, km/s.
+    pub dv_depart_km_s: f64,
+    /// Second impulse, km/s.
+    pub dv_arrive_km_s: f64,
+    /// Their sum, km/s.
+    pub dv_total_km_s: f64,
+    /// Square of the excess speed needed at departure, km^2/s^2.
+    pub c3_km2_s2: f64,
+    /// Excess speed at arrival before the second impulse, km/s.
+    pub vinf_arrive_km_s: f64,
+    /// Propellant over the mass at the start of the phases counted.
+    pub propellant_fraction: f64,
+    /// Start mass less propellant less stage dry mass, kg; null without a mass.
+    pub delivered_kg: Option<f64>,
+    /// Heliocentric angle swept / 360 deg.
+    pub revolutions: f64,
+    /// Which way round the Sun.
+    pub direction: Direction,
+    /// Heliocentric longitude of the target body less that of the start body at departure, deg in (-180, 180]; null
+    /// where no body is met.
+    pub phase_depart_deg: Option<f64>,
+    /// Which departures and flight times were searched, in words.
+    pub span: String,
+    /// What is counted, in words.
+    pub phases: String,
+}
+
+/// Which way round the Sun, seen from ecliptic north.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum Direction {
+    /// Counter-clockwise, as the planets go.
+    Prograde,
+    /// Clockwise.
+    Retrograde,
+}
+
+/// A dated flight as seen from the Earth (the Earth-Moon barycentre), and how the bodies stand.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
+pub struct EarthView {
+    /// Largest distance from the Earth, au.
+    pub range_max_au: f64,
+    /// Distance from the Earth at arrival, au.
+    pub range_arrive_au: f64,
+    /// Time that light takes one way over the largest distance, s.
+    pub light_time_max_s: f64,
+    /// Smallest angle at the Earth between the Sun and the craft, deg; null where the craft never leaves the Earth.
+    pub sun_earth_craft_min_deg: Option<f64>,
+    /// Heliocentric longitude of the target body less that of the start body at departure, deg in (-180, 180].
+    pub phase_depart_deg: f64,
+    /// The same at arrival.
+    pub phase_arrive_deg: f64,
 }
 
 /// One way of counting an impulsive transfer.

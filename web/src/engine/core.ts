@@ -14,16 +14,24 @@ export interface Checked {
 export type Theme = "light" | "dark";
 export type FigureName = "orbit" | "histories";
 
-/** Sizes in CSS pixels; `scale` is device pixels per CSS pixel, at least 2 for smooth lines. */
+/** Sizes in CSS pixels; `scale` is device pixels per CSS pixel, at least 2 for smooth lines. Left out: the whole
+ * picture seen from ecliptic north, the usual panels. */
 export interface FigureOptions {
   width: number;
   height: number;
   scale: number;
   theme: Theme;
-  zoom: number;
-  pan_x_au: number;
-  pan_y_au: number;
   stale: boolean;
+  zoom?: number;
+  pan_x_au?: number;
+  pan_y_au?: number;
+  /** 0 from ecliptic north to 90 edge-on. */
+  tilt_deg?: number;
+  turn_deg?: number;
+  /** When the bodies of a dated flight are shown besides. */
+  cursor_t_d?: number;
+  /** Columns of the histories, from top to bottom. */
+  panels?: string[];
 }
 
 /** Where a panel's data area is, in CSS pixels, and what its edges mean. */
@@ -40,6 +48,11 @@ export interface FigurePanel {
   y_max: number;
   /** Equal heights are equal ratios. */
   y_log: boolean;
+  /** Orbit picture: pixels to the right and down for each au along ecliptic x, y and z, row by row. */
+  project: [number, number, number, number, number, number] | null;
+  /** Orbit picture: where the Sun is drawn. */
+  center_x: number | null;
+  center_y: number | null;
 }
 
 export interface Figures {

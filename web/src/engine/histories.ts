@@ -25,7 +25,12 @@ export class Histories {
     return high < 0 ? -1 : low;
   }
 
-  /** Straight between samples; NaN where the column has no value. */
+  /** Whether the column has a value anywhere. */
+  has(name: string): boolean {
+    return this.column(name).some(Number.isFinite);
+  }
+
+  /** Straight between samples, the short way round for the clock angle; NaN where the column has no value. */
   at(name: string, time_d: number): number {
     const times = this.column("t_d");
     const values = this.column(name);
@@ -34,7 +39,9 @@ export class Histories {
     const [start, end] = [times[i] ?? Number.NaN, times[i + 1] ?? Number.NaN];
     if (Number.isNaN(next) || !(end > start)) return value;
     if (Number.isNaN(value)) return next;
-    return value + ((next - value) * (time_d - start)) / (end - start);
+    const turn = name === "clock_deg" && Math.abs(next - value) > 180 ? 360 * Math.sign(value - next) : 0;
+    const between = value + ((next + turn - value) * (time_d - start)) / (end - start);
+    return Math.abs(between) > 180 && turn !== 0 ? between - 360 * Math.sign(between) : between;
   }
 
   /** About so many sample numbers, evenly spread, with the first and the last. */

@@ -18,6 +18,8 @@ export interface End {
   inclination_deg: number;
   node_deg: number;
   arg_peri_deg: number;
+  mean_anomaly_deg: number | null;
+  period_d: number;
 }
 
 export interface Craft {

@@ -1,5 +1,6 @@
 // The inputs: one field a row of the table in controls.ts, each with its unit, range, help and errors.
-import { CONTROLS, GROUPS, isAsked, type Control, type CraftBy } from "../controls";
+import { CONTROLS, ELEMENTS, GROUPS, elementKey, isAsked, type Control, type CraftBy } from "../controls";
+import { dateEntry } from "../date-entry";
 import { h, part } from "../dom";
 import type { KeyInfo } from "../engine/report";
 import { fixed, typed, unitOf } from "../format";
@@ -24,19 +25,24 @@ export function mountInputs(page: Page): void {
     wide.addEventListener("change", () => (details.open = wide.matches));
     if (group === "craft") details.append(craftWays(page));
     const controls = CONTROLS.filter((control) => control.group === group);
-    for (const control of controls) details.append(field(page, control, infos.get(control.key)));
+    for (const control of controls) {
+      if (control.element) orbitBox(page, details, control).append(field(page, control, undefined));
+      else details.append(field(page, control, infos.get(control.key)));
+    }
     if (group === "craft") details.append(derived(page));
     if (group === "ends") details.append(swapEnds(page));
     form.append(details);
     const summarise = () => {
       const scenario = state.scenario.get();
-      const shown = controls.filter((control) => isAsked(control, scenario) && scenario.texts[control.key]);
+      const asked = controls.filter((control) => isAsked(control, scenario));
+      details.hidden = asked.length === 0;
+      const shown = asked.filter((control) => scenario.texts[control.key]);
       summary.textContent = shown
         .map((control) => {
           const text = scenario.texts[control.key] ?? "";
           const words = control.choices?.find(([value]) => value === text)?.[1].replace(/ \(.*/, "") ?? typed(text);
           const unit = text === "none" ? "" : unitOf(control.unit ?? infos.get(control.key)?.unit ?? "");
-          return [words, unit].join(" ").trim();
+          return [control.element && control.label, words, unit].filter(Boolean).join(" ");
         })
         .join(" · ");
       details.classList.toggle("wrong", controls.some((control) => state.errorsAt(control).length > 0));
@@ -44,6 +50,18 @@ export function mountInputs(page: Page): void {
     state.scenario.watch(summarise);
     state.verdict.watch(summarise);
   }
+}
+
+/** The box of one orbit's elements, made when the first of them comes. */
+function orbitBox(page: Page, group: HTMLElement, { element, key }: Control): HTMLElement {
+  const id = `box-${element?.key}`;
+  const there = group.querySelector<HTMLElement>(`#${id}`);
+  if (there) return there;
+  const box = h("fieldset", { class: "elements", id }, h("legend", {}, element?.key === "from_orbit" ? "Orbit of the start" : "Orbit of the target"));
+  const first = CONTROLS.find((control) => control.key === key);
+  page.state.scenario.watch((scenario) => (box.hidden = !first || !isAsked(first, scenario)));
+  group.append(box);
+  return box;
 }
 
 function field(page: Page, control: Control, info: KeyInfo | undefined): HTMLElement {
@@ -55,15 +73,17 @@ function field(page: Page, control: Control, info: KeyInfo | undefined): HTMLEle
   const input = control.choices
     ? h("select", { id, name: control.key }, ...control.choices.map(([value, words]) => h("option", { value }, words)))
     : h("input", { id, name: control.key, type: "text", spellcheck: "false", autocapitalize: "off" });
-  if (!control.choices && control.key !== "title") input.setAttribute("inputmode", control.key.endsWith("_km") ? "text" : "decimal");
-  if (input instanceof HTMLInputElement && info?.default === "none") input.placeholder = "none";
+  if (!control.choices && control.kind === undefined) input.setAttribute("inputmode", control.key.endsWith("_km") ? "text" : "decimal");
+  if (input instanceof HTMLInputElement) input.placeholder = control.standing ?? (info?.default === "none" ? "none" : "");
   input.addEventListener("input", () => state.edit(control.key, input.value));
   const slide = control.slider && slider(page, control, control.slider, control.label ?? info?.label ?? control.key, unit);
+  const label = control.label ?? info?.label ?? control.key;
+  const dated = control.kind === "date" && input instanceof HTMLInputElement;
   const box = h(
     "div",
-    { class: control.choices || control.key === "title" ? "field long" : "field" },
-    h("label", { for: id }, control.label ?? info?.label ?? control.key),
-    h("span", { class: "entry" }, input, unit && h("span", { class: "unit" }, unit)),
+    { class: control.choices || control.kind === "text" ? "field long" : "field" },
+    h("label", { for: id }, label),
+    h("span", { class: "entry" }, input, unit && h("span", { class: "unit" }, unit), dated && dateEntry(input, label)),
     slide,
     help,
     errors,
@@ -165,7 +185,8 @@ function derived(page: Page): HTMLElement {
 function swapEnds(page: Page): HTMLElement {
   const swap = () => {
     const { texts } = page.state.scenario.get();
-    for (const [a, b] of [["from", "to"], ["from_orbit", "to_orbit"]] as const) {
+    const elements = ELEMENTS.map(({ name }) => [elementKey("from_orbit", name), elementKey("to_orbit", name)] as const);
+    for (const [a, b] of [["from", "to"] as const, ...elements]) {
       page.state.edit(a, texts[b] ?? "");
       page.state.edit(b, texts[a] ?? "");
     }

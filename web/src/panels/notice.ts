@@ -106,7 +106,7 @@ function errorList(state: State, errors: readonly LinkError[]): HTMLElement {
     "ul",
     {},
     ...errors.map((error) => {
-      const control = state.controlOf(error.key);
+      const control = state.controlOf(error);
       const name = control
         ? h("button", { type: "button", class: "plain", onclick: () => reveal(control.key) }, error.key)
         : h("code", {}, typed(error.key));

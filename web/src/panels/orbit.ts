@@ -1,54 +1,54 @@
-// The orbit picture: zoom and pan by wheel, drag, keys and buttons; the craft at the time cursor.
+// The orbit picture: zoom, move and tilt by wheel, drag, keys and buttons; the craft at the time cursor.
+import { drawCraft } from "../craft-mark";
 import { h, part, table } from "../dom";
 import type { Histories } from "../engine/histories";
-import { Figure, place, token, type View } from "../figure";
+import { Figure, project } from "../figure";
 import { fixed } from "../format";
+import { valueOf } from "../link";
 import type { Page } from "./page";
 
-const WHOLE: View = { zoom: 1, pan_x_au: 0, pan_y_au: 0 };
+interface View {
+  zoom: number;
+  pan_x_au: number;
+  pan_y_au: number;
+  tilt_deg: number;
+  turn_deg: number;
+}
+
+/** In space the whole is seen from a little aside, so that heights show. */
+const WHOLE: View = { zoom: 1, pan_x_au: 0, pan_y_au: 0, tilt_deg: 35, turn_deg: 0 };
 const ZOOM_STEP = 1.4;
 const LARGEST_ZOOM = 60;
 /** Part of the picture's width that one press moves it by. */
 const PAN_STEP = 0.15;
+/** Degrees that one press tilts or turns by. */
+const TILT_STEP_DEG = 10;
+/** Degrees for each pixel of a drag. */
+const TILT_DRAG_DEG = 0.4;
 /** The pointer takes the cursor to the path from this far, CSS pixels. */
 const REACH_PX = 26;
 
+const WAYS = [
+  ["tilt", "Tilt", "Drag and arrows tilt and turn the picture; with Shift they move it"],
+  ["move", "Move", "Drag and arrows move the picture; with Shift they tilt and turn it"],
+] as const;
+
 export function mountOrbit({ state, client }: Page): void {
   let view = WHOLE;
+  let way: "tilt" | "move" = "tilt";
+  const inSpace = () => valueOf(state.shown.get()?.link ?? "", "geometry") === "spatial";
+  const isDated = () => (state.shown.get()?.solved.report.flight.depart ?? null) !== null;
   const figure = new Figure(state, client, {
     name: "orbit",
     height: (width) => Math.min(width, Math.max(320, innerHeight - 120)),
-    view: () => view,
+    view: () => {
+      const { tilt_deg, turn_deg, ...flat } = view;
+      return inSpace() ? { ...view, ...(isDated() ? { cursor_t_d: state.cursor_d.get() } : {}) } : flat;
+    },
     overlay: (context, panels) => {
       const panel = panels[0];
-      const shown = state.shown.get();
-      if (!panel || !shown || shown.histories.rows === 0) return;
-      const day = state.cursor_d.get();
-      const [x, y] = [shown.histories.at("x_au", day), shown.histories.at("y_au", day)];
-      const [left, top] = place(panel, x, y);
-      const [sunLeft, sunTop] = place(panel, 0, 0);
-      context.save();
-      context.beginPath();
-      context.rect(panel.left, panel.top, panel.width, panel.height);
-      context.clip();
-      context.lineWidth = 1;
-      context.strokeStyle = token("edge");
-      context.globalAlpha = 0.6;
-      context.beginPath();
-      context.moveTo(sunLeft, sunTop);
-      context.lineTo(left, top);
-      context.stroke();
-      context.globalAlpha = 1;
-      const cone = shown.histories.at("cone_deg", day);
-      if (Number.isFinite(cone)) drawSail(context, left, top, Math.atan2(y, x) + (cone * Math.PI) / 180);
-      context.fillStyle = token("sail");
-      context.strokeStyle = token("sheet");
-      context.lineWidth = 2;
-      context.beginPath();
-      context.arc(left, top, 5, 0, 2 * Math.PI);
-      context.fill();
-      context.stroke();
-      context.restore();
+      const histories = state.shown.get()?.histories;
+      if (panel && histories && histories.rows > 0) drawCraft(context, panel, histories, state.cursor_d.get());
     },
   });
   const auPerPixel = () => {
@@ -62,28 +62,40 @@ export function mountOrbit({ state, client }: Page): void {
   const zoomBy = (factor: number) => change({ zoom: Math.min(LARGEST_ZOOM, Math.max(1, view.zoom * factor)) });
   const panBy = (right_px: number, up_px: number) =>
     change({ pan_x_au: view.pan_x_au + right_px * auPerPixel(), pan_y_au: view.pan_y_au + up_px * auPerPixel() });
-  const stepPan = (right: number, up: number) => {
-    const step = PAN_STEP * (figure.panels[0]?.width ?? 0);
-    panBy(right * step, up * step);
+  const tiltBy = (turn_deg: number, tilt_deg: number) =>
+    change({ turn_deg: (view.turn_deg + turn_deg) % 360, tilt_deg: Math.min(90, Math.max(0, view.tilt_deg + tilt_deg)) });
+  const tilts = (shifted: boolean) => inSpace() && (way === "tilt") !== shifted;
+  const step = (right: number, up: number) => (shifted: boolean) => {
+    if (tilts(shifted)) return tiltBy(right * TILT_STEP_DEG, up * TILT_STEP_DEG);
+    const length = PAN_STEP * (figure.panels[0]?.width ?? 0);
+    panBy(right * length, up * length);
   };
-  const moves: readonly [string, string, string, () => void][] = [
-    ["+", "Zoom in", "+", () => zoomBy(ZOOM_STEP)],
-    ["−", "Zoom out", "-", () => zoomBy(1 / ZOOM_STEP)],
-    ["←", "Move the view left", "ArrowLeft", () => stepPan(-1, 0)],
-    ["→", "Move the view right", "ArrowRight", () => stepPan(1, 0)],
-    ["↑", "Move the view up", "ArrowUp", () => stepPan(0, 1)],
-    ["↓", "Move the view down", "ArrowDown", () => stepPan(0, -1)],
-    ["Whole", "Show the whole picture", "0", () => change(WHOLE)],
+  interface Move {
+    sign: string;
+    words: string;
+    /** Words where arrows tilt. */
+    tilting?: string;
+    key: string;
+    go: (shifted: boolean) => void;
+  }
+  const moves: readonly Move[] = [
+    { sign: "+", words: "Zoom in", key: "+", go: () => zoomBy(ZOOM_STEP) },
+    { sign: "−", words: "Zoom out", key: "-", go: () => zoomBy(1 / ZOOM_STEP) },
+    { sign: "←", words: "Move the view left", tilting: "Turn the picture clockwise", key: "ArrowLeft", go: step(-1, 0) },
+    { sign: "→", words: "Move the view right", tilting: "Turn the picture counter-clockwise", key: "ArrowRight", go: step(1, 0) },
+    { sign: "↑", words: "Move the view up", tilting: "Tilt towards edge-on", key: "ArrowUp", go: step(0, 1) },
+    { sign: "↓", words: "Move the view down", tilting: "Tilt towards the view from north", key: "ArrowDown", go: step(0, -1) },
+    { sign: "Whole", words: "Show the whole picture", key: "0", go: () => change(WHOLE) },
   ];
+  const north = h("button", { type: "button", title: "Look down from ecliptic north", onclick: () => change({ tilt_deg: 0, turn_deg: 0 }) }, "From north");
   const frame = figure.frame;
   frame.tabIndex = 0;
   frame.setAttribute("role", "group");
-  frame.setAttribute("aria-label", "Orbit picture. Plus and minus zoom, arrow keys move, 0 shows the whole.");
   frame.addEventListener("keydown", (event) => {
-    const move = moves.find(([, , key]) => key === event.key || (key === "+" && event.key === "="));
+    const move = moves.find(({ key }) => key === event.key || (key === "+" && event.key === "="));
     if (!move || event.ctrlKey || event.metaKey || event.altKey) return;
     event.preventDefault();
-    move[3]();
+    move.go(event.shiftKey);
   });
   // The wheel scrolls the page unless the picture has the focus.
   frame.addEventListener(
@@ -102,24 +114,29 @@ export function mountOrbit({ state, client }: Page): void {
     if (!panel || !histories) return undefined;
     const bounds = frame.getBoundingClientRect();
     const [left, top] = [event.clientX - bounds.left, event.clientY - bounds.top];
-    const [x, y, times] = [histories.column("x_au"), histories.column("y_au"), histories.column("t_d")];
+    const [x, y, z, times] = ["x_au", "y_au", "z_au", "t_d"].map((name) => histories.column(name));
     let [best, day]: [number, number | undefined] = [REACH_PX, undefined];
     for (let i = 0; i < histories.rows; i++) {
-      const [px, py] = place(panel, x[i] ?? 0, y[i] ?? 0);
+      const [px, py] = project(panel, [x?.[i] ?? 0, y?.[i] ?? 0, z?.[i] ?? 0]);
       const distance = Math.hypot(px - left, py - top);
-      if (distance < best) [best, day] = [distance, times[i]];
+      if (distance < best) [best, day] = [distance, times?.[i]];
     }
     return day;
   };
   let grabbed: { x: number; y: number } | null = null;
+  let dragged = 0;
   frame.addEventListener("pointerdown", (event) => {
     if (event.button !== 0) return;
     grabbed = { x: event.clientX, y: event.clientY };
+    dragged = 0;
     frame.setPointerCapture(event.pointerId);
   });
   frame.addEventListener("pointermove", (event) => {
     if (grabbed) {
-      panBy(grabbed.x - event.clientX, event.clientY - grabbed.y);
+      const [right, down] = [event.clientX - grabbed.x, event.clientY - grabbed.y];
+      dragged += Math.abs(right) + Math.abs(down);
+      if (tilts(event.shiftKey)) tiltBy(TILT_DRAG_DEG * right, -TILT_DRAG_DEG * down);
+      else panBy(-right, down);
       grabbed = { x: event.clientX, y: event.clientY };
       return;
     }
@@ -128,50 +145,63 @@ export function mountOrbit({ state, client }: Page): void {
   });
   frame.addEventListener("pointerup", (event) => {
     grabbed = null;
-    const day = nearest(event);
+    // Letting go after a drag is no click on the path.
+    const day = dragged < 4 ? nearest(event) : undefined;
     if (day !== undefined) state.cursor_d.set(day);
   });
   frame.addEventListener("pointercancel", () => (grabbed = null));
 
-  const buttons = h(
-    "div",
-    { class: "tools", role: "group", "aria-label": "View of the orbit picture" },
-    ...moves.map(([sign, words, , move]) => h("button", { type: "button", "aria-label": words, title: words, onclick: move }, sign)),
-  );
+  const radios = WAYS.map(([value, words, title]) => {
+    const radio = h("input", { type: "radio", name: "orbit-drag", value, title });
+    radio.addEventListener("change", () => {
+      way = value;
+      name();
+    });
+    radio.checked = value === way;
+    return h("label", { class: "choice" }, radio, words);
+  });
+  const ways = h("fieldset", { class: "ways" }, h("legend", { class: "unseen" }, "What drag and arrows do; with Shift they do the other"), ...radios);
+  const buttons = moves.map(({ sign, go }) => h("button", { type: "button", onclick: () => go(false) }, sign));
+  const name = () => {
+    const spatial = inSpace();
+    ways.hidden = north.hidden = !spatial;
+    moves.forEach(({ words, tilting }, i) => {
+      const said = tilting && tilts(false) ? tilting : words;
+      buttons[i]?.setAttribute("aria-label", said);
+      buttons[i]?.setAttribute("title", said);
+    });
+    const arrows = spatial ? `arrow keys ${way}, with Shift ${way === "tilt" ? "move" : "tilt"}` : "arrow keys move";
+    frame.setAttribute("aria-label", `Orbit picture. Plus and minus zoom, ${arrows}, 0 shows the whole.`);
+    frame.classList.toggle("spatial", spatial);
+  };
+  const tools = h("div", { class: "tools", role: "group", "aria-label": "View of the orbit picture" }, ways, ...buttons, north);
   const behind = h("details", { class: "behind" }, h("summary", {}, "Table behind this picture"));
   const fill = () => {
     if (!behind.open) return;
     behind.querySelector(".frame")?.remove();
     const histories = state.shown.get()?.histories;
-    if (histories) behind.append(positions(histories));
+    if (histories) behind.append(positions(histories, inSpace()));
   };
   behind.addEventListener("toggle", fill);
-  state.shown.watch(fill);
-  part("orbit").append(h("div", { class: "head" }, h("h2", { id: "orbit-title" }, "Orbit picture"), buttons), frame, behind);
+  state.shown.watch(() => {
+    name();
+    fill();
+  });
+  part("orbit").append(h("div", { class: "head" }, h("h2", { id: "orbit-title" }, "Orbit picture"), tools), frame, behind);
 }
 
-/** The sail edge-on as a bar, with its normal. */
-function drawSail(context: CanvasRenderingContext2D, left: number, top: number, normal_rad: number): void {
-  const [nx, ny] = [Math.cos(normal_rad), -Math.sin(normal_rad)];
-  context.strokeStyle = token("sail");
-  context.lineWidth = 3;
-  context.beginPath();
-  context.moveTo(left - 15 * ny, top + 15 * nx);
-  context.lineTo(left + 15 * ny, top - 15 * nx);
-  context.stroke();
-  context.lineWidth = 1.5;
-  context.beginPath();
-  context.moveTo(left, top);
-  context.lineTo(left + 20 * nx, top + 20 * ny);
-  context.stroke();
-}
-
-function positions(histories: Histories): HTMLElement {
-  const cell = (name: string, i: number) => h("td", {}, fixed(histories.column(name)[i], 4));
+function positions(histories: Histories, spatial: boolean): HTMLElement {
+  const columns = ["x_au", "y_au", ...(spatial ? ["z_au"] : []), "distance_au"];
+  const heads = ["day", "x, au", "y, au", ...(spatial ? ["z, au"] : []), "Sun distance, au"];
   const rows = histories
     .sampled(25)
     .map((i) =>
-      h("tr", {}, h("th", { scope: "row" }, fixed(histories.column("t_d")[i], 1)), cell("x_au", i), cell("y_au", i), cell("distance_au", i)),
+      h(
+        "tr",
+        {},
+        h("th", { scope: "row" }, fixed(histories.column("t_d")[i], 1)),
+        ...columns.map((name) => h("td", {}, fixed(histories.column(name)[i], 4))),
+      ),
     );
-  return table("Positions along the flight", ["day", "x, au", "y, au", "Sun distance, au"], rows);
+  return table("Positions along the flight", heads, rows);
 }

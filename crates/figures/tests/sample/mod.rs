@@ -1,8 +1,12 @@
 //! Invented flights for tests and the sample sheet: logarithmic spirals, whose motion has a closed form.
 
-#![allow(dead_code, reason = "each test and the sample sheet uses part of it")]
+#![allow(dead_code, unused_imports, reason = "each test and the sample sheet uses part of it")]
+
+mod space;
 
 use scenario::report::*;
+
+pub(crate) use space::{CROSSING, Crossing, crossing};
 
 /// Days in the canonical unit of time, sqrt(au^3 / mu) for the Sun.
 const UNIT_D: f64 = 58.132_441;
@@ -35,6 +39,7 @@ pub(crate) enum Cone {
     Swing,
 }
 
+/// Outwards from the Earth to Mars.
 pub(crate) const MARS: Spiral =
     Spiral { from: ("Earth", 1.0), to: ("Mars", 1.52371034), lightness: 0.1, rows: 400, cone: Cone::Jump };
 
@@ -127,6 +132,8 @@ fn end((name, radius): (&str, f64)) -> End {
         inclination_deg: 0.0,
         node_deg: 0.0,
         arg_peri_deg: 0.0,
+        mean_anomaly_deg: None,
+        period_d: 0.0,
     }
 }
 
@@ -210,6 +217,8 @@ fn report(spiral: Spiral) -> Report {
             from_parking_note: None,
             lead_angle_deg: 44.3,
             synodic_d: None,
+            dated: None,
+            dated_same_dates: None,
         },
         cautions: Vec::new(),
     }

@@ -6,7 +6,7 @@
 
 use nalgebra::{SMatrix, SVector};
 use numerics::arclength::{self, Curve, Ended, Row, Stride};
-use numerics::continuation::{Lost, Pace, follow};
+use numerics::continuation::{Pace, follow};
 use numerics::dual::Dual;
 use numerics::newton::{Equations, Goal, Linearised, Solved, newton};
 use numerics::ode::{Flow, Mode, Options, Termination, integrate};
@@ -30,12 +30,14 @@ pub struct Problem {
 /// How the answer was found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Route {
-    /// The allowance grew in steps from nothing.
-    Grown,
-    /// From where that got stuck, by Newton's method at the whole allowance.
-    Leapt,
-    /// From where that got stuck, round folds by pseudo-arclength.
-    Folded,
+    /// Both allowances grew together.
+    Together,
+    /// The arrival's grew first.
+    ArrivalFirst,
+    /// The departure's grew first.
+    DepartureFirst,
+    /// With a stronger sail first, weakened afterwards.
+    Stronger,
 }
 
 /// A solved (or nearly solved) extremal, in units of the start radius.
@@ -54,8 +56,9 @@ pub struct Extremum {
 struct Shooting {
     ratio: f64,
     lightness: f64,
-    /// In units of the start circle's speed.
-    allowance: Allowance,
+    /// Allowances at shares 0 and 1, in units of the start circle's speed.
+    from: Allowance,
+    to: Allowance,
     share: f64,
     tolerance: f64,
 }
@@ -74,19 +77,27 @@ fn launched<T: Scalar>([l_r, q_u, q_v]: [T; 3], allowance: T) -> Augmented<T> {
 }
 
 impl Shooting {
+    /// With the whole allowance granted.
     fn of(problem: &Problem, tolerance: f64) -> Shooting {
         let circles = &problem.circles;
-        let allowance = problem.allowance.times(circles.start_radius.sqrt());
-        Shooting { ratio: circles.ratio(), lightness: circles.lightness, allowance, share: 1.0, tolerance }
+        let to = problem.allowance.times(circles.start_radius.sqrt());
+        let (ratio, lightness) = (circles.ratio(), circles.lightness);
+        Shooting { ratio, lightness, from: to, to, share: 1.0, tolerance }
     }
 
     /// Distance, then velocity as far as it is not allowed for, in parts of the target's distance and speed.
-    fn mismatch<T: Scalar>(&self, [r, u, v, l_r, l_u, l_v]: &Augmented<T>, share: T) -> [T; 3] {
+    fn mismatch<T: Scalar>(&self, [r, u, v, l_r, l_u, l_v]: &Augmented<T>, allowed: T) -> [T; 3] {
         let root = self.ratio.sqrt();
         let scale = l_r.value().hypot(l_u.value()).hypot(l_v.value()).recip();
         let relative = [*u, *v - root.recip()];
-        let [du, dv] = left_over(relative, [*l_u * scale, *l_v * scale], share * self.allowance.arrival);
+        let [du, dv] = left_over(relative, [*l_u * scale, *l_v * scale], allowed);
         [*r / self.ratio - 1.0, du * root, dv * root]
+    }
+
+    /// The Hamiltonian, whose sign no longer follows from the start being on a circle.
+    fn hamiltonian(&self, point: &Unknowns) -> f64 {
+        let start = launched(point.costate.into(), self.to.departure);
+        Extremal { lightness: self.lightness }.hamiltonian(&start)
     }
 
     /// Mismatches, with columns for the two tangents, time and share.
@@ -94,7 +105,9 @@ impl Shooting {
         let [first, second] = tangents(&point.costate);
         let guide = std::array::from_fn(|i| Dual { v: point.costate[i], d: [first[i], second[i], 0.0] });
         let share = Dual::<3>::variable(share, 2);
-        let start = launched(guide, share * self.allowance.departure);
+        let granted = |from: f64, to: f64| share * (to - from) + from;
+        let start = launched(guide, granted(self.from.departure, self.to.departure));
+        let allowed = granted(self.from.arrival, self.to.arrival);
         let flow = Extremal { lightness: self.lightness };
         let options = Options { tolerance: self.tolerance, max_steps: MAX_STEPS };
         let outcome = integrate(&flow, &start, point.time, &options);
@@ -104,7 +117,7 @@ impl Shooting {
         let end = outcome.state;
         let rates = flow.rates(Mode::default(), &end.map(|y| y.v));
         let along: Augmented<Dual<1>> = std::array::from_fn(|i| Dual { v: end[i].v, d: [rates[i]] });
-        let (value, slope) = (self.mismatch(&end, share), self.mismatch(&along, Dual::constant(share.v)));
+        let (value, slope) = (self.mismatch(&end, allowed), self.mismatch(&along, Dual::constant(allowed.v)));
         let jacobian = SMatrix::<f64, 3, 4>::from_fn(|row, column| match column {
             0 | 1 => value[row].d[column],
             2 => slope[row].d[0],
@@ -113,11 +126,6 @@ impl Shooting {
         let value = SVector::from(value.map(|y| y.v));
         let finite = value.iter().chain(jacobian.iter()).all(|x| x.is_finite());
         finite.then_some((value, jacobian))
-    }
-
-    fn moved(point: &Unknowns, a: f64, b: f64, time: f64) -> Unknowns {
-        let [first, second] = tangents(&point.costate);
-        Unknowns { costate: (point.costate + first * a + second * b).normalize(), time }
     }
 }
 
@@ -133,7 +141,9 @@ impl Equations<3> for Shooting {
     }
 
     fn moved(&self, point: &Unknowns, step: &SVector<f64, 3>) -> Unknowns {
-        Shooting::moved(point, step[0], step[1], point.time + step[2])
+        let [first, second] = tangents(&point.costate);
+        let costate = (point.costate + first * step[0] + second * step[1]).normalize();
+        Unknowns { costate, time: point.time + step[2] }
     }
 
     fn trusted_fraction(&self, point: &Unknowns, step: &SVector<f64, 3>) -> f64 {
@@ -142,21 +152,33 @@ impl Equations<3> for Shooting {
 }
 
 /// The flights of all shares: unknowns, and the share as the parameter.
-impl Curve<3, 4> for Shooting {
+///
+/// Steps are taken in the three components of the costate, with a row that keeps it a unit vector: a basis of the
+/// tangent plane would turn over somewhere along the curve.
+impl Curve<4, 5> for Shooting {
     type Point = (Unknowns, f64);
 
-    fn linearised(&self, (point, share): &Self::Point) -> Option<Row<3, 4>> {
+    fn linearised(&self, (point, share): &Self::Point) -> Option<Row<4, 5>> {
         if *share < 0.0 {
             return None;
         }
-        let (value, mut jacobian) = self.rows(point, *share)?;
-        // The time column counts parts of the time.
-        jacobian.column_mut(2).scale_mut(point.time);
-        Some((value, jacobian))
+        let (value, by_tangents) = self.rows(point, *share)?;
+        let [first, second] = tangents(&point.costate);
+        let mut jacobian = SMatrix::<f64, 4, 5>::zeros();
+        for row in 0..3 {
+            let across = first * by_tangents[(row, 0)] + second * by_tangents[(row, 1)];
+            jacobian.fixed_view_mut::<1, 3>(row, 0).copy_from(&across.transpose());
+            // The time column counts parts of the time.
+            jacobian[(row, 3)] = by_tangents[(row, 2)] * point.time;
+            jacobian[(row, 4)] = by_tangents[(row, 3)];
+        }
+        jacobian.fixed_view_mut::<1, 3>(3, 0).copy_from(&point.costate.transpose());
+        Some((value.push(0.0), jacobian))
     }
 
-    fn moved(&self, (point, share): &Self::Point, step: &SVector<f64, 4>) -> Self::Point {
-        (Shooting::moved(point, step[0], step[1], point.time * step[2].exp()), share + step[3])
+    fn moved(&self, (point, share): &Self::Point, step: &SVector<f64, 5>) -> Self::Point {
+        let costate = (point.costate + step.fixed_rows::<3>(0)).normalize();
+        (Unknowns { costate, time: point.time * step[3].exp() }, share + step[4])
     }
 
     fn parameter(&self, (_, share): &Self::Point) -> f64 {
@@ -168,11 +190,15 @@ impl Curve<3, 4> for Shooting {
 const CARRY: (f64, f64) = (1e-10, 1e-8);
 const POLISH: (f64, f64) = (1e-12, 1e-10);
 
-const PACE: Pace = Pace { first: 0.34, largest: 0.5, smallest: 2e-3, easy_passes: 4 };
-
-/// Restarted where growing got stuck: small steps at first.
+/// Along the curve from the start.
 const STRIDE: Stride =
-    Stride { first: 3e-3, largest: 0.3, smallest: 1e-7, accept: 1e-3, wanted_correction: 0.01, budget: 600 };
+    Stride { first: 0.1, largest: 0.5, smallest: 1e-4, accept: 1e-3, wanted_correction: 0.01, budget: 120 };
+
+/// Natural steps, which cross the kink where the primer reaches zero better than a curve's tangent does.
+const PACE: Pace = Pace { first: 0.1, largest: 0.5, smallest: 2e-3, easy_passes: 4 };
+
+/// Restarted where natural steps got stuck.
+const CAREFUL: Stride = Stride { first: 3e-3, largest: 0.3, smallest: 1e-7, budget: 600, ..STRIDE };
 
 fn refine(shooting: &Shooting, start: Unknowns, residual: f64, passes: usize) -> Option<Solved<Unknowns>> {
     newton(shooting, start, &Goal { residual, passes })
@@ -183,13 +209,71 @@ fn near(now: &Unknowns, next: &Unknowns) -> bool {
     (now.costate - next.costate).norm() < 0.4 && (next.time / now.time).ln().abs() < 0.3
 }
 
-/// Follows the flight without excess to the whole allowance.
-fn grown(shooting: &Shooting, start: Unknowns, goal: f64) -> Result<Unknowns, Lost<Unknowns>> {
+/// Follows a flight from the allowance `from` to `to`; the sign of the Hamiltonian is not looked at.
+fn grown(at: &Shooting, start: Unknowns, [from, to]: [Allowance; 2], goal: f64) -> Option<Unknowns> {
+    let leg = Shooting { from, to, ..*at };
+    let along = |start: (Unknowns, f64), stride: &Stride| {
+        let towards = arclength::Goal { parameter: 1.0, sign: 1.0 };
+        let followed = arclength::follow(&leg, start, &towards, stride, &mut |_| true);
+        (followed.ended == Ended::Reached).then_some(followed.point.0)
+    };
+    let landed = |point: Unknowns| refine(&leg, point, goal, 12).filter(|x| x.converged).map(|x| x.point);
+    let quick = along((start, 0.0), &STRIDE).and_then(landed);
+    if quick.is_some() {
+        return quick;
+    }
     let solve = |share: f64, guess: Unknowns| {
-        let solved = refine(&Shooting { share, ..*shooting }, guess, goal, 8)?;
+        let solved = refine(&Shooting { share, ..leg }, guess, goal, 8)?;
         (solved.converged && near(&guess, &solved.point)).then_some((solved.point, solved.passes))
     };
-    follow(start, &PACE, solve, Unknowns::extrapolated)
+    let stuck = match follow(start, &PACE, solve, Unknowns::extrapolated) {
+        Ok(point) => return Some(point),
+        Err(stuck) => stuck,
+    };
+    // Where only a part will be used from here on, the rest of the way is one step.
+    let leap = refine(&leg, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
+    leap.map(|x| x.point)
+        .or_else(|| along((stuck.point, stuck.parameter), &CAREFUL).and_then(landed))
+        .or_else(|| along((start, 0.0), &Stride { wanted_correction: 2e-3, ..CAREFUL }).and_then(landed))
+}
+
+/// The flight of shooting `at` by one of the ways that start from `plain`, the flight without excess.
+fn by_way(at: &Shooting, plain: Unknowns, goal: f64) -> Option<(Unknowns, Route)> {
+    const NONE: Allowance = Allowance::NONE;
+    let both = at.to;
+    let arrival = Allowance { departure: 0.0, ..both };
+    let departure = Allowance { arrival: 0.0, ..both };
+    let minimum = |point: &Unknowns| at.hamiltonian(point) > 0.0;
+    let in_turn = |first: Allowance| {
+        if first == NONE || first == both {
+            return None;
+        }
+        let halfway = grown(at, plain, [NONE, first], goal)?;
+        grown(at, halfway, [first, both], goal).filter(minimum)
+    };
+    grown(at, plain, [NONE, both], goal)
+        .filter(minimum)
+        .map(|x| (x, Route::Together))
+        .or_else(|| in_turn(arrival).map(|x| (x, Route::ArrivalFirst)))
+        .or_else(|| in_turn(departure).map(|x| (x, Route::DepartureFirst)))
+}
+
+/// Factors on the lightness number for what cannot be reached otherwise.
+const STRONGER: [f64; 3] = [1.5, 2.2, 4.0];
+
+fn by_stronger_sail(problem: &Problem, factor: f64, goal: f64) -> Option<(Unknowns, Route)> {
+    let lightness = problem.circles.lightness;
+    let circles = solve::Problem { lightness: lightness * factor, ..problem.circles };
+    let at = Shooting::of(&Problem { circles, ..*problem }, CARRY.0);
+    let (strong, _) = by_way(&at, without_excess(&circles)?.unknowns, goal)?;
+    let solve = |share: f64, guess: Unknowns| {
+        let weaker = Shooting { lightness: lightness * factor.powf(1.0 - share), ..at };
+        let solved = refine(&weaker, guess, goal, 8)?;
+        let held = solved.converged && near(&guess, &solved.point) && weaker.hamiltonian(&solved.point) > 0.0;
+        held.then_some((solved.point, solved.passes))
+    };
+    let point = follow(strong, &PACE, solve, Unknowns::extrapolated).ok()?;
+    Some((point, Route::Stronger))
 }
 
 /// Solves `problem`; `None` when every route failed. The radii must differ by more than one part in ten million.
@@ -197,30 +281,10 @@ pub fn solve(problem: &Problem) -> Option<Extremum> {
     let plain = without_excess(&problem.circles)?;
     let gap = problem.circles.ratio().ln().abs();
     let goal = CARRY.1.min(1e-3 * gap);
-    let shooting = Shooting::of(problem, CARRY.0);
-    let (rough, route) = match grown(&shooting, plain.unknowns, goal) {
-        Ok(point) => (point, Route::Grown),
-        Err(stuck) => onward(&shooting, &stuck, goal)?,
-    };
+    let (rough, route) = by_way(&Shooting::of(problem, CARRY.0), plain.unknowns, goal)
+        .or_else(|| STRONGER.into_iter().find_map(|factor| by_stronger_sail(problem, factor, goal)))?;
     let polished = refine(&Shooting::of(problem, POLISH.0), rough, POLISH.1.min(1e-5 * gap), 8)?;
     Some(Extremum { unknowns: polished.point, residual: polished.residual, route })
-}
-
-/// From where growing got stuck to the whole allowance.
-fn onward(shooting: &Shooting, stuck: &Lost<Unknowns>, goal: f64) -> Option<(Unknowns, Route)> {
-    let leapt =
-        refine(shooting, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
-    if let Some(leapt) = leapt {
-        return Some((leapt.point, Route::Leapt));
-    }
-    let towards = arclength::Goal { parameter: 1.0, sign: 1.0 };
-    let followed =
-        arclength::follow(shooting, (stuck.point, stuck.parameter), &towards, &STRIDE, &mut |_| true);
-    if followed.ended != Ended::Reached {
-        return None;
-    }
-    let landed = refine(shooting, followed.point.0, goal, 12)?;
-    landed.converged.then_some((landed.point, Route::Folded))
 }
 
 /// Flies `unknowns` (in units of the start radius) to the end, as [`super::flight::fly`] does.

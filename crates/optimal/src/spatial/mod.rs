@@ -2,6 +2,8 @@
 
 pub mod curves;
 pub mod ends;
+pub mod excess;
+pub mod excess_rows;
 pub mod extremal;
 pub mod growing_open;
 pub mod launch;

@@ -7,7 +7,7 @@ use super::curves::{Growing, Leaving, Point, Setting};
 use super::ends::coasting_rate;
 use super::growing_open::{GrowingOpen, OpenPoint};
 use super::launch::{Care, grown, grown_to};
-use super::polish::{Conditions, Flight, Kind};
+use super::polish::{Conditions, Flight, Kind, polish};
 use super::prove::{Flown, answered};
 use super::rendezvous::same;
 
@@ -23,11 +23,14 @@ fn flight(point: &Point, departure: f64) -> Flight {
     Flight { costate: point.costate, departure, time: point.time, arrival: point.arrival }
 }
 
-/// Departure points from which a search starts, as parts of the start orbit's period.
-const STARTS: [f64; 3] = [0.0, 1.0 / 3.0, 2.0 / 3.0];
+/// Most Jacobians along one direction of one curve.
+const BUDGET: usize = 500;
 
-/// Most Jacobians along one direction of one curve, from the first start and from the later ones.
-const BUDGETS: [usize; 3] = [500, 1500, 1500];
+/// Departure points tried, evenly spread in time, where marching from the first meets no stationary one.
+const PLACES: u32 = 8;
+
+/// Of those, how many of the fastest to march from.
+const FASTEST: usize = 4;
 
 /// Flights with both ends free, fastest first.
 ///
@@ -35,14 +38,14 @@ const BUDGETS: [usize; 3] = [500, 1500, 1500];
 /// marching round the start orbit are taken; where there are none, those of nearly round orbits are grown.
 pub fn free_ends(setting: &Setting, conditions: &Conditions<'_>) -> Vec<Flown> {
     let mut found = Collected::new(conditions);
-    marched(setting, STARTS[0], BUDGETS[0], &mut found);
+    if let Some(open) = launched(setting, 0.0, &Care::QUICK) {
+        marched(setting, &open, &Care::QUICK, &mut found);
+    }
+    if found.flights.is_empty() {
+        from_fastest(setting, &mut found);
+    }
     if found.flights.is_empty() {
         grown_from_round(setting, &mut found);
-    }
-    for (part, budget) in STARTS.into_iter().zip(BUDGETS).skip(1) {
-        if found.flights.is_empty() {
-            marched(setting, part, budget, &mut found);
-        }
     }
     found.sorted()
 }
@@ -72,15 +75,23 @@ impl<'a> Collected<'a> {
     }
 }
 
-/// Stationary departure points met while marching round the start orbit from a part of its period.
-fn marched(setting: &Setting, part: f64, budget: usize, found: &mut Collected<'_>) {
-    let period = period(setting);
-    for care in [Care::QUICK, Care::CAREFUL] {
-        if !found.flights.is_empty() {
-            return;
-        }
-        if let Some(open) = launched(setting, part * period, &care) {
-            crossings(setting, &open, period, &care, budget).into_iter().for_each(|guess| found.add(guess));
+/// Stationary departure points met while marching round the start orbit from `open`.
+fn marched(setting: &Setting, open: &Point, care: &Care, found: &mut Collected<'_>) {
+    for guess in crossings(setting, open, care, BUDGET) {
+        found.add(guess);
+    }
+}
+
+/// Marches from the fastest of several departure points: a curve of flights has several sheets, and the one with the
+/// least time is where its minimum is near.
+fn from_fastest(setting: &Setting, found: &mut Collected<'_>) {
+    let care = Care::CAREFUL;
+    let place = |k: u32| launched(setting, period(setting) * f64::from(k) / f64::from(PLACES), &care);
+    let mut points: Vec<Point> = (0..PLACES).filter_map(place).collect();
+    points.sort_by(|a, b| a.time.total_cmp(&b.time));
+    for open in points.iter().take(FASTEST) {
+        if found.flights.is_empty() {
+            marched(setting, open, &care, found);
         }
     }
 }
@@ -102,7 +113,11 @@ fn grown_from_round(setting: &Setting, found: &mut Collected<'_>) {
     let open = Point { parameter: 0.0, ..open };
     let tracing = Setting { tolerance: care.tolerance, ..*setting };
     let curve = GrowingOpen(&tracing);
-    for guess in crossings(&round, &open, period(setting), &care, BUDGETS[1]) {
+    let (from, to) = (|time| round.ends.departure(1.0, time), |time| round.ends.target(1.0, time));
+    let axis = round.ends.to.semi_major_axis;
+    let nearly_round = Conditions { from: &from, to: &to, target_axis: axis, ..*found.conditions };
+    let guesses = crossings(&round, &open, &care, 3 * BUDGET).into_iter();
+    for guess in guesses.filter_map(|guess| polish(Kind::OpenEnds, &nearly_round, guess, care.tolerance)) {
         let point = Point {
             costate: guess.costate,
             time: guess.time,
@@ -135,7 +150,8 @@ fn leaving_gain(setting: &Setting, costate: &Vector6<f64>, departure: f64) -> Op
 
 /// Guesses of stationary departure points: where the gain changes sign along the curve of orbit matches, followed both
 /// ways until it has gone once round the start orbit.
-fn crossings(setting: &Setting, open: &Point, period: f64, care: &Care, budget: usize) -> Vec<Flight> {
+fn crossings(setting: &Setting, open: &Point, care: &Care, budget: usize) -> Vec<Flight> {
+    let period = period(setting);
     let setting = Setting { tolerance: care.tolerance, ..*setting };
     let curve = Leaving(&setting);
     let mut guesses = Vec::new();

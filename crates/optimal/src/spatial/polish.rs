@@ -25,7 +25,7 @@ pub struct Flight {
 }
 
 impl Flight {
-    fn moved(&self, costate: Vector6<f64>, departure: f64, time: f64, arrival: f64) -> Flight {
+    pub(super) fn moved(&self, costate: Vector6<f64>, departure: f64, time: f64, arrival: f64) -> Flight {
         Flight {
             costate: (self.costate + costate).normalize(),
             departure: self.departure + departure,
@@ -135,7 +135,7 @@ impl Equations<7> for Meeting<'_> {
     }
 }
 
-fn trusted(turn: f64, stretch: f64) -> f64 {
+pub(super) fn trusted(turn: f64, stretch: f64) -> f64 {
     (0.4 / turn).min(0.2 / stretch).min(1.0)
 }
 

@@ -6,9 +6,11 @@ use numerics::ode::{DenseStep, Flow, Mode, Options, Termination, integrate_obser
 use sail::trajectory::{Sample, Sampling, Trajectory};
 
 use super::ends::{State, coasting_rate};
+use super::excess_rows::launched;
 use super::extremal::Extremal;
 use super::polish::{Conditions, Exactness, Flight, Kind, polish};
 use crate::certificate::{Evidence, Verdict};
+use crate::excess::{Allowance, End, Used};
 
 /// A flown spatial extremal. Canonical units (au).
 #[derive(Clone, Debug)]
@@ -21,6 +23,8 @@ pub struct Flown {
     pub evidence: Evidence,
     /// State at arrival.
     pub end: State,
+    /// Excess speeds used at the two ends.
+    pub excess: Used,
 }
 
 /// The extremal with two quadratures: angle swept, and velocity change by the sail.
@@ -74,10 +78,20 @@ pub fn answered(kind: Kind, conditions: &Conditions<'_>, traced: Flight) -> Opti
 ///
 /// `None` when the integration itself fails; a flight that misses its target is returned with that evidence.
 pub fn prove(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<Flown> {
+    prove_granted(conditions, flight, &Allowance::NONE, tolerance)
+}
+
+/// Like [`prove`], with excess speeds allowed at the ends; the flight's costate holds the guide of [`crate::excess`].
+pub fn prove_granted(
+    conditions: &Conditions<'_>,
+    flight: &Flight,
+    allowance: &Allowance,
+    tolerance: f64,
+) -> Option<Flown> {
     let recorder = Recorder(Extremal { lightness: conditions.lightness });
     let sampling = Sampling::for_sweep(flight.time * conditions.target_axis.min(1.0).powf(-1.5));
     let mut samples = Vec::new();
-    let (end, evidence) = reflown(conditions, flight, tolerance, &mut |step| {
+    let (end, evidence, excess) = reflown(conditions, flight, allowance, tolerance, &mut |step| {
         if samples.is_empty() {
             samples.push(recorder.sample(step.start, &step.from));
         }
@@ -86,27 +100,28 @@ pub fn prove(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Op
         }
     })?;
     let trajectory = Trajectory { samples, jumps: Vec::new(), swept: end[12], delta_v: end[13] };
-    Some(Flown { flight: *flight, trajectory, evidence, end: std::array::from_fn(|i| end[i]) })
+    Some(Flown { flight: *flight, trajectory, evidence, end: std::array::from_fn(|i| end[i]), excess })
 }
 
 /// What [`prove`] proves, without the path: several times cheaper.
 pub fn evidence(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<Evidence> {
-    reflown(conditions, flight, tolerance, &mut |_| ()).map(|(_, evidence)| evidence)
+    reflown(conditions, flight, &Allowance::NONE, tolerance, &mut |_| ()).map(|(_, evidence, _)| evidence)
 }
 
 /// Flies `flight`, shows every step, and judges where it ends.
 fn reflown(
     conditions: &Conditions<'_>,
     flight: &Flight,
+    allowance: &Allowance,
     tolerance: f64,
     show: &mut dyn FnMut(&DenseStep<f64, 14>),
-) -> Option<(Recorded, Evidence)> {
+) -> Option<(Recorded, Evidence, Used)> {
     let start = (conditions.from)(flight.departure)?;
     let target = (conditions.to)(flight.arrival)?;
     let recorder = Recorder(Extremal { lightness: conditions.lightness });
     let mut state = [0.0; 14];
-    state[..6].copy_from_slice(&start);
-    state[6..12].copy_from_slice(flight.costate.as_slice());
+    state[..12].copy_from_slice(&launched(start, flight.costate.into(), allowance.departure));
+    let leaving = end_of(&augmented(&state), &start, -1.0, allowance.departure);
     let first = recorder.0.hamiltonian(&augmented(&state));
     let mut largest_change = 0.0f64;
     let mut observe = |step: &DenseStep<f64, 14>| {
@@ -122,6 +137,7 @@ fn reflown(
         return None;
     }
     let end = outcome.state;
+    let arriving = end_of(&augmented(&end), &target, 1.0, allowance.arrival);
     let gap = |i: usize| end[i] - target[i];
     let rates = recorder.rates(Mode::default(), &end);
     let moving = coasting_rate(&target);
@@ -131,13 +147,23 @@ fn reflown(
     let apart = Vector6::from_fn(|i, _| start[i] - target[i]).norm();
     let evidence = Evidence {
         position_error: gap(0).hypot(gap(1)).hypot(gap(2)),
-        speed_error: gap(3).hypot(gap(4)).hypot(gap(5)),
-        excess_misfit: 0.0,
+        speed_error: arriving.beyond(),
+        excess_misfit: leaving.misfit().max(arriving.misfit()),
         target_distance: target[0].hypot(target[1]).hypot(target[2]),
         target_speed: target[3].hypot(target[4]).hypot(target[5]),
         gap: apart,
         hamiltonian_drift: largest_change / first.abs().max(at_arrival.abs()),
         hamiltonian_at_arrival: at_arrival,
     };
-    Some((end, evidence))
+    Some((end, evidence, Used { departure: leaving.speed(), arrival: arriving.speed() }))
+}
+
+/// Velocity relative to a body, and the primer there, counted with `sign`.
+fn end_of(y: &[f64; 12], body: &State, sign: f64, allowance: f64) -> End<3> {
+    let scale = sign / Vector6::from_fn(|i, _| y[6 + i]).norm();
+    End {
+        relative: std::array::from_fn(|i| y[3 + i] - body[3 + i]),
+        primer: std::array::from_fn(|i| y[9 + i] * scale),
+        allowance,
+    }
 }

@@ -7,7 +7,7 @@ use numerics::ode::{Flow, Mode, Options, Termination, integrate};
 use super::ends::State;
 use super::extremal::{Augmented, Extremal};
 
-const MAX_STEPS: usize = 20_000;
+pub(super) const MAX_STEPS: usize = 20_000;
 
 /// State and costate at arrival, as plain numbers and as derivatives.
 #[derive(Clone, Debug)]
@@ -23,7 +23,7 @@ pub struct Terminal {
 }
 
 /// Five unit vectors across `axis` (a unit vector) and across each other: columns of a Householder reflection.
-fn tangents(axis: &Vector6<f64>) -> SMatrix<f64, 6, 5> {
+pub(super) fn tangents(axis: &Vector6<f64>) -> SMatrix<f64, 6, 5> {
     let sign = if axis[0] < 0.0 { -1.0 } else { 1.0 };
     let mut mirror = *axis;
     mirror[0] += sign;

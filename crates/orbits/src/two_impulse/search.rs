@@ -2,28 +2,37 @@
 
 use std::f64::consts::{PI, TAU};
 
-use super::simplex::descend;
-use super::{Goal, Question, Span, TwoImpulse, lambert_between, transfer};
+use super::simplex::{Point, descend};
+use super::{Flown, Goal, Question, Span, TwoImpulse, lambert_between, sum_km_s};
 use crate::kepler::Elements;
 use crate::lambert::Direction;
 use crate::two_body::State;
 use crate::units::days;
 
-/// Grid steps in one revolution of the faster body; basins are a sixth of a revolution wide or more.
+/// Grid steps in one revolution of a body; basins are a sixth of a revolution wide or more.
 const STEPS_A_REVOLUTION: f64 = 24.0;
 
 /// The same for the place on the target's orbit and for flight time to it, where nothing moves.
 const PLACES: usize = 20;
-const TIMES_TO_AN_ORBIT: usize = 14;
+const TIMES_TO_AN_ORBIT: usize = 12;
 
-/// Fewest and most grid points along departure or flight time.
-const POINTS: (f64, f64) = (12.0, 90.0);
+/// Fewest grid points along departure, along flight time, and most grid points in all.
+const DEPARTS_MIN: usize = 6;
+const TIMES_MIN: usize = 24;
+const POINTS_MAX: usize = 6000;
 
-/// Basins that are descended into.
-const BASINS: usize = 12;
+/// Basins whose floor is sounded, and how many of the lowest are descended to the end.
+const BASINS: (usize, usize) = (48, 6);
 
-/// A descent ends when its simplex is this share of a grid step: the impulse is then settled to its square.
+/// Size of the simplex, in grid steps, at which a sounding and a descent end: the impulse is then known to the square
+/// of that.
+const SOUNDED: f64 = 0.05;
 const SETTLED: f64 = 1e-6;
+
+/// The best descent starts again from its end, since a simplex can collapse in a long valley: until it gains less than
+/// this share of the impulse, so many times at most.
+const GAIN: f64 = 1e-12;
+const RESTARTS_MAX: usize = 8;
 
 /// More whole revolutions than this are not looked at.
 const REVOLUTIONS_MAX: u32 = 20;
@@ -37,13 +46,10 @@ struct Axis {
 }
 
 impl Axis {
-    fn new(first: f64, last: f64, spacing: f64) -> Axis {
-        let count = if last > first {
-            ((last - first) / spacing).ceil().clamp(POINTS.0, POINTS.1) as usize
-        } else {
-            1
-        };
-        Axis { first, last, count }
+    /// Points no farther apart than `spacing`, as far as their number allows; one where nothing is free.
+    fn new((first, last): (f64, f64), spacing: f64, (fewest, most): (usize, usize)) -> Axis {
+        let wanted = ((last - first) / spacing).ceil() as usize;
+        Axis { first, last, count: if last > first { wanted.min(most).max(fewest) } else { 1 } }
     }
 
     fn at(&self, i: usize) -> f64 {
@@ -87,21 +93,22 @@ impl Search<'_> {
         (longest >= span.shortest_d).then(|| [depart, time.clamp(span.shortest_d, longest), anomaly])
     }
 
-    /// The cheapest transfer of one family at these values.
-    fn best_of(&self, family: Family, x: [f64; 3]) -> Option<TwoImpulse> {
+    /// The cheapest arc of one family at these values.
+    fn best_of(&self, family: Family, x: [f64; 3]) -> Option<Flown> {
         let [depart, time, anomaly] = self.inside(x)?;
         let from = self.question.from.state(depart).ok()?;
         let to = self.target(depart + time, anomaly)?;
-        lambert_between((&from, &to), time, family.direction, family.revolutions)
-            .iter()
+        let (arc, sum_km_s) = lambert_between((&from, &to), time, family.direction, family.revolutions)
+            .into_iter()
             .filter(|arc| arc.revolutions == family.revolutions)
-            .filter_map(|arc| transfer(self.question, (depart, time), (&from, &to), arc, family.direction))
-            .min_by(|a, b| a.impulses.total_km_s().total_cmp(&b.impulses.total_km_s()))
+            .map(|arc| (arc, sum_km_s(self.question, (&from, &to), &arc)))
+            .min_by(|a, b| a.1.total_cmp(&b.1))?;
+        Some(Flown { depart_j2000_d: depart, time_d: time, from, to, arc, sum_km_s })
     }
 
-    /// [`Search::best_of`] as a function to descend on.
+    /// The function to descend on, km/s.
     fn cost(&self, family: Family, x: [f64; 3]) -> f64 {
-        self.best_of(family, x).map_or(f64::INFINITY, |found| found.impulses.total_km_s())
+        self.best_of(family, x).map_or(f64::INFINITY, |flown| flown.sum_km_s)
     }
 }
 
@@ -111,19 +118,37 @@ pub(super) fn search(question: &Question, span: &Span) -> Option<TwoImpulse> {
         (question.from.elements(span.first_j2000_d), question.to.elements(span.first_j2000_d));
     let search = Search { question, span, orbit };
     let axes = axes(question, span, &from_orbit, &orbit);
-    let families = families(span, &from_orbit, &orbit);
+    let families = families(question, span, &from_orbit, &orbit);
     let costs = costs(&search, &axes, &families);
-    let step = [axes[0].step(), axes[1].step(), axes[2].step()];
-    let mut best: Option<TwoImpulse> = None;
-    for (family, start) in basins(&costs, &axes, &families) {
-        let cost = |x: [f64; 3]| search.cost(family, x);
-        let (settled, _) = descend(cost, start, step.map(|s| 0.5 * s), SETTLED);
-        let Some(found) = search.best_of(family, settled) else { continue };
-        if best.is_none_or(|b| found.impulses.total_km_s() < b.impulses.total_km_s()) {
-            best = Some(found);
+    // First steps go inwards: beyond the edge of the span nothing changes, and a simplex there would not turn round.
+    let inwards = |axis: usize, at: f64| {
+        let Axis { first, last, .. } = axes[axis];
+        if at > 0.5 * (first + last) { -0.5 * axes[axis].step() } else { 0.5 * axes[axis].step() }
+    };
+    let settle = |family: Family, start: [f64; 3], shrink: f64| {
+        let step = std::array::from_fn(|axis| inwards(axis, start[axis]));
+        let (x, sum_km_s) = descend(|x| search.cost(family, x), start, step, shrink);
+        (family, (search.inside(x).unwrap_or(x), sum_km_s))
+    };
+    let lower = |a: &(Family, Point), b: &(Family, Point)| a.1.1.total_cmp(&b.1.1);
+    let mut sounded: Vec<(Family, Point)> = basins(&costs, &axes, &families)
+        .into_iter()
+        .map(|(family, start)| settle(family, start, SOUNDED))
+        .collect();
+    sounded.sort_by(lower);
+    let settled = sounded.iter().take(BASINS.1).map(|(family, point)| settle(*family, point.0, SETTLED));
+    let (family, mut best) = settled.min_by(lower)?;
+    for _ in 0..RESTARTS_MAX {
+        let (_, again) = settle(family, best.0, SETTLED);
+        let gained = best.1 - again.1;
+        if gained > 0.0 {
+            best = again;
+        }
+        if gained <= GAIN * best.1 {
+            break;
         }
     }
-    best
+    search.best_of(family, best.0)?.told(question, family.direction)
 }
 
 fn axes(question: &Question, span: &Span, from: &Elements, to: &Elements) -> [Axis; 3] {
@@ -132,34 +157,39 @@ fn axes(question: &Question, span: &Span, from: &Elements, to: &Elements) -> [Ax
         let hurry = (1.0 - orbit.eccentricity) * (1.0 - orbit.eccentricity * orbit.eccentricity).sqrt();
         days(TAU / orbit.mean_motion(1.0)) * hurry.max(0.25)
     };
-    let spacing = |turn_d: f64| turn_d / STEPS_A_REVOLUTION;
-    let (first, last) = (span.first_j2000_d, span.last_j2000_d);
-    let (shortest, longest) = (span.shortest_d, span.longest_d);
+    let spacing = |orbit: &Elements| turn_d(orbit) / STEPS_A_REVOLUTION;
+    let departs = (span.first_j2000_d, span.last_j2000_d);
+    let times = (span.shortest_d, span.longest_d);
     match question.goal {
-        Goal::Body => [
-            Axis::new(first, last, spacing(turn_d(from).min(turn_d(to)))),
-            Axis::new(shortest, longest, spacing(turn_d(to)).min((longest - shortest) / 30.0)),
-            Axis { first: 0.0, last: 0.0, count: 1 },
-        ],
-        Goal::Orbit => [
-            Axis::new(first, last, spacing(turn_d(from))),
-            Axis {
-                first: shortest,
-                last: longest,
-                count: if longest > shortest { TIMES_TO_AN_ORBIT } else { 1 },
-            },
-            Axis { first: 0.0, last: TAU, count: PLACES + 1 },
-        ],
+        Goal::Body => {
+            let departs = Axis::new(departs, spacing(from), (DEPARTS_MIN, POINTS_MAX / TIMES_MIN));
+            let times = Axis::new(times, spacing(to), (TIMES_MIN, POINTS_MAX / departs.count));
+            [departs, times, Axis { first: 0.0, last: 0.0, count: 1 }]
+        }
+        Goal::Orbit => {
+            let most = POINTS_MAX / PLACES / TIMES_TO_AN_ORBIT;
+            let departs = Axis::new(departs, spacing(from), (DEPARTS_MIN, most));
+            let times = Axis::new(times, 0.0, (TIMES_TO_AN_ORBIT, POINTS_MAX / PLACES / departs.count));
+            [departs, times, Axis { first: 0.0, last: TAU, count: PLACES + 1 }]
+        }
     }
 }
 
-/// Prograde always, retrograde where one of the orbits is; as many revolutions as the longest flight has room for.
-fn families(span: &Span, from: &Elements, to: &Elements) -> Vec<Family> {
+/// Prograde always, retrograde where one of the orbits is; as many revolutions as the longest flight has room for. To any
+/// place on an orbit the same ellipse without its whole revolutions costs the same: where flights may be short they
+/// are left out.
+fn families(question: &Question, span: &Span, from: &Elements, to: &Elements) -> Vec<Family> {
     // The shortest ellipse between two places has half their larger distance as semi-major axis, or more.
     let perihelion = |orbit: &Elements| orbit.semi_major_axis * (1.0 - orbit.eccentricity);
     let smallest_axis = 0.5 * perihelion(from).max(perihelion(to));
     let shortest_turn_d = days(TAU * smallest_axis.powf(1.5));
-    let revolutions_max = ((span.longest_d / shortest_turn_d) as u32).min(REVOLUTIONS_MAX);
+    let mut revolutions_max = ((span.longest_d / shortest_turn_d) as u32).min(REVOLUTIONS_MAX);
+    if question.goal == Goal::Orbit
+        && span.shortest_d < 0.5 * shortest_turn_d
+        && span.longest_d > span.shortest_d
+    {
+        revolutions_max = 0;
+    }
     let retrograde = |orbit: &Elements| orbit.inclination_rad.rem_euclid(TAU) > 0.5 * PI;
     let mut families = Vec::new();
     let directions: &[Direction] = if retrograde(from) || retrograde(to) {
@@ -198,11 +228,8 @@ fn costs(search: &Search, axes: &[Axis; 3], families: &[Family]) -> Vec<Vec<f64>
                 for (first, family) in families.iter().enumerate().filter(|(_, f)| f.revolutions == 0) {
                     let highest = families.iter().filter(|f| f.direction == family.direction).count() - 1;
                     for arc in lambert_between((&from, &to), time, family.direction, highest as u32) {
-                        let found =
-                            transfer(search.question, (depart, time), (&from, &to), &arc, family.direction);
-                        let Some(found) = found else { continue };
                         let least = &mut costs[first + arc.revolutions as usize][cell];
-                        *least = least.min(found.impulses.total_km_s());
+                        *least = least.min(sum_km_s(search.question, (&from, &to), &arc));
                     }
                 }
             }
@@ -228,7 +255,7 @@ fn basins(costs: &[Vec<f64>], axes: &[Axis; 3], families: &[Family]) -> Vec<(Fam
         }
     }
     found.sort_by(|a, b| a.0.total_cmp(&b.0));
-    found.truncate(BASINS);
+    found.truncate(BASINS.0);
     found.into_iter().map(|(_, family, x)| (family, x)).collect()
 }
 
@@ -253,14 +280,16 @@ mod tests {
     use super::*;
     use crate::ephemeris::Traveller;
     use crate::planets::Planet;
+    use crate::two_impulse::Count;
 
     #[test]
     fn number_of_revolutions_is_what_the_time_has_room_for() {
-        let orbit = |planet| Traveller::Planet(planet).elements(0.0);
-        let span = |longest_d| Span { longest_d, ..Span::dates(0.0, 10.0) };
+        let body = |planet| Traveller::Planet(planet);
+        let (from, to, goal) = (body(Planet::Earth), body(Planet::Mars), Goal::Body);
+        let question = Question { from, to, goal, count: Count::Heliocentric };
         let most = |longest_d| {
-            let all = families(&span(longest_d), &orbit(Planet::Earth), &orbit(Planet::Mars));
-            all.last().unwrap().revolutions
+            let span = Span { longest_d, ..Span::dates(0.0, 10.0) };
+            families(&question, &span, &from.elements(0.0), &to.elements(0.0)).last().unwrap().revolutions
         };
         // Half of Mars's perihelion distance, 0.69 au, is gone round in 0.574 years.
         assert_eq!((most(200.0), most(220.0), most(430.0)), (0, 1, 2));

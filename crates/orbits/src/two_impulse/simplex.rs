@@ -12,7 +12,12 @@ pub(super) type Point = ([f64; 3], f64);
 ///
 /// Ends when the simplex is `shrink` times its first size. A function that is infinite somewhere is never followed
 /// there, as long as it is finite at the start.
-pub(super) fn descend(mut f: impl FnMut([f64; 3]) -> f64, start: [f64; 3], step: [f64; 3], shrink: f64) -> Point {
+pub(super) fn descend(
+    mut f: impl FnMut([f64; 3]) -> f64,
+    start: [f64; 3],
+    step: [f64; 3],
+    shrink: f64,
+) -> Point {
     let axes: Vec<usize> = (0..3).filter(|&axis| step[axis] != 0.0).collect();
     let n = axes.len();
     let mut simplex: Vec<Point> = vec![(start, f(start))];

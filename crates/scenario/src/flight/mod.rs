@@ -10,7 +10,7 @@ use sail::temperature::film_temperature_k;
 use sail::trajectory::{Sample, Trajectory};
 
 use crate::histories::{jumps, km, turn_rate_deg_d};
-use crate::report::{Columns, Flight, Proof, SecondOrder, Status};
+use crate::report::{Columns, Flight, Margin, Proof, SecondOrder, Status};
 use crate::schema::{Geometry, Scenario};
 
 /// An ideal mirror would stay cold: its temperature is told with the thermal numbers of this film.
@@ -18,10 +18,18 @@ const THERMAL: &Optics = &ALUMINISED;
 
 /// The flight of `scenario` at this lightness number, and its histories (empty when there is none to show).
 pub(crate) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
-    match scenario.geometry {
+    let (mut flight, columns) = match scenario.geometry {
         Geometry::Coplanar => coplanar::flight(scenario, lightness),
         Geometry::Spatial => spatial::flight(scenario, lightness),
+    };
+    if flight.margin.is_none() {
+        flight.margin = scenario.deadline_d.zip(flight.time_d).map(|(deadline_d, time_d)| Margin {
+            days_in_hand: deadline_d - time_d,
+            mass_growth_pct: None,
+            ac_in_hand_pct: None,
+        });
     }
+    (flight, columns)
 }
 
 /// A flight without numbers: what is known is the status and why.

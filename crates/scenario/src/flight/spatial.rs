@@ -140,11 +140,6 @@ fn told(scenario: &Scenario, bodies: &Bodies, setting: &Setting, found: &[Flown]
             best: std::ptr::eq(flown, best),
         })
         .collect();
-    flight.margin = scenario.deadline_d.map(|deadline_d| crate::report::Margin {
-        days_in_hand: deadline_d - units::days(best.flight.time),
-        mass_growth_pct: None,
-        ac_in_hand_pct: None,
-    });
     let histories = columns(&best.trajectory, THERMAL);
     (flight, histories)
 }
