@@ -13,9 +13,9 @@ export interface Scenario {
 
 export interface Control {
   key: string;
-  group: "craft" | "ends" | "steering" | "baseline" | "about";
-  /** Element of an orbit: the key that carries it in the link, and its name there. */
-  element?: { key: OrbitKey; name: string };
+  group: "craft" | "ends" | "steering" | "baseline" | "about" | "departures";
+  /** Part of a list: the key that carries the list in the link, and the part's name in the core's messages. */
+  piece?: { key: ListKey; name: string };
   /** Kind of text field; a number if left out. */
   kind?: "date" | "text";
   /** Fixed choices instead of a text field: value and words. */
@@ -44,9 +44,11 @@ export const GROUPS = [
   ["about", "Title"],
 ] as const;
 
-/** Keys that carry an orbit as a list of elements. */
+/** Keys whose value is a list, each part with a field of its own. */
 export const ORBIT_KEYS = ["from_orbit", "to_orbit"] as const;
+export const LIST_KEYS = [...ORBIT_KEYS, "span", "ac_range"] as const;
 export type OrbitKey = (typeof ORBIT_KEYS)[number];
+export type ListKey = (typeof LIST_KEYS)[number];
 
 interface Element {
   name: string;
@@ -63,14 +65,14 @@ export const ELEMENTS: readonly Element[] = [
   { name: "a_au", label: "Semi-major axis", unit: "au", range: "0.2 to 40", help: "", default: "" },
   { name: "e", label: "Eccentricity", unit: "", range: "0 to 0.99", help: "", default: "0" },
   { name: "i_deg", label: "Inclination", unit: "deg", range: "0 to 180", help: "To the ecliptic of J2000.", default: "0" },
-  { name: "node_deg", label: "Ascending node", unit: "deg", range: "-360 to 360", help: "", default: "0" },
-  { name: "arg_peri_deg", label: "Argument of perihelion", unit: "deg", range: "-360 to 360", help: "From the node, not the longitude.", default: "0" },
-  { name: "mean_anomaly_deg", label: "Mean anomaly", unit: "deg", range: "-360 to 360", help: "At the epoch.", default: "0" },
+  { name: "node_deg", label: "Ascending node", unit: "deg", range: "−360 to 360", help: "", default: "0" },
+  { name: "arg_peri_deg", label: "Argument of perihelion", unit: "deg", range: "−360 to 360", help: "From the node.", default: "0" },
+  { name: "mean_anomaly_deg", label: "Mean anomaly", unit: "deg", range: "−360 to 360", help: "At the epoch.", default: "0" },
   { name: "epoch_jd_tdb", label: "Epoch", unit: "JD", range: "", help: "Julian date, TDB; left out: J2000, 2451545.", default: "2451545" },
 ];
 
-/** The field of one element of an orbit. */
-export const elementKey = (orbit: OrbitKey, element: string): string => `${orbit}_${element}`;
+/** The field of one part of a list. */
+export const pieceKey = (list: ListKey, name: string): string => `${list}_${name}`;
 
 const BODIES = [
   ["mercury", "Mercury"],
@@ -108,9 +110,9 @@ const onCircles = (scenario: Scenario) => !inSpace(scenario);
 function elements(key: OrbitKey, end: "from" | "to"): Control[] {
   const given = ({ texts }: Scenario) => texts[end] === "orbit";
   return ELEMENTS.map(({ name, label, unit, range, help, default: standing }, i) => ({
-    key: elementKey(key, name),
+    key: pieceKey(key, name),
     group: "ends",
-    element: { key, name },
+    piece: { key, name },
     label,
     unit,
     range,
@@ -118,6 +120,20 @@ function elements(key: OrbitKey, end: "from" | "to"): Control[] {
     standing,
     asked: (scenario) => given(scenario) && (i === 0 || inSpace(scenario)) && (i < 5 || !!scenario.texts.depart),
   }));
+}
+
+/** The study of departure dates: its span, its step, and the accelerations of the map. */
+function departures(): Control[] {
+  const date = { group: "departures", kind: "date", asked: inSpace, range: "YYYY-MM-DD", help: "" } as const;
+  const range = { group: "departures", unit: "mm/s²", asked: inSpace, help: "" } as const;
+  return [
+    { ...date, key: "span_first", piece: { key: "span", name: "first" }, label: "First date" },
+    { ...date, key: "span_last", piece: { key: "span", name: "last" }, label: "Last date" },
+    { key: "step_d", group: "departures", asked: inSpace, help: "" },
+    { ...range, key: "ac_range_low", piece: { key: "ac_range", name: "low" }, label: "Least acceleration" },
+    { ...range, key: "ac_range_high", piece: { key: "ac_range", name: "high" }, label: "Largest acceleration" },
+    { ...range, key: "ac_range_count", piece: { key: "ac_range", name: "count" }, label: "Accelerations", unit: "", range: "1 to 100" },
+  ];
 }
 
 export const CONTROLS: readonly Control[] = [
@@ -158,11 +174,12 @@ export const CONTROLS: readonly Control[] = [
   { key: "park_km", group: "baseline" },
   { key: "capture_km", group: "baseline" },
   { key: "stage_dry", group: "baseline" },
+  ...departures(),
   { key: "title", group: "about", kind: "text", range: "Up to 80 characters", help: "Shown above the answer and carried by the link." },
 ];
 
 /** Keys that have a field of their own, asked for or not. */
-export const WITH_FIELD: ReadonlySet<string> = new Set([...CONTROLS.map((control) => control.key), ...ORBIT_KEYS]);
+export const WITH_FIELD: ReadonlySet<string> = new Set([...CONTROLS.map((control) => control.key), ...LIST_KEYS]);
 
 export function isAsked(control: Control, scenario: Scenario): boolean {
   return scenario.pinned.has(control.key) || (control.asked?.(scenario) ?? true);

@@ -8,12 +8,21 @@ import type { State } from "./state";
 /** Ecliptic x, y and z. */
 export type Vector = readonly [number, number, number];
 
+/** What a figure draws: its panels, or nothing when the core failed on it. */
+export interface Picture {
+  draw(canvas: HTMLCanvasElement, options: FigureOptions): readonly FigurePanel[] | undefined;
+  /** What a reader would see. */
+  words(): string;
+}
+
 export interface FigureParts {
-  name: FigureName;
+  name: string;
   /** Height in CSS pixels for a width. */
   height: (width: number) => number;
   /** What of the figure is shown; with a cursor in it, the figure is drawn anew as the cursor moves. */
   view?: () => Omit<FigureOptions, "width" | "height" | "scale" | "theme" | "stale">;
+  /** Whether it no longer shows what the inputs say. */
+  stale: () => boolean;
   /** Draws what moves, in CSS pixels, on a cleared layer. */
   overlay: (context: CanvasRenderingContext2D, panels: readonly FigurePanel[]) => void;
 }
@@ -26,19 +35,16 @@ export class Figure {
   private readonly base = h("canvas", { role: "img" });
   private readonly layer = h("canvas", { "aria-hidden": "true", class: "layer" });
   private readonly words = h("p", { class: "unseen" });
-  private readonly failed = h("p", { class: "alarm", hidden: true }, "This figure could not be drawn for this flight.");
-  private figures: Figures | undefined;
+  private readonly failed = h("p", { class: "alarm", hidden: true }, "This figure could not be drawn.");
+  private picture: Picture | undefined;
 
   constructor(
     private readonly state: State,
-    private readonly client: Client,
     private readonly parts: FigureParts,
   ) {
-    const id = `${parts.name}-words`;
-    this.words.id = id;
-    this.base.setAttribute("aria-labelledby", id);
+    this.words.id = `${parts.name}-words`;
+    this.base.setAttribute("aria-labelledby", this.words.id);
     this.frame.append(this.base, this.layer, this.words, this.failed);
-    state.shown.watch(() => this.renew());
     state.theme.watch(this.redraw);
     state.verdict.watch(this.redraw);
     state.cursor_d.watch(() => (parts.view?.().cursor_t_d === undefined ? this.redrawOverlay() : this.redraw()));
@@ -46,17 +52,20 @@ export class Figure {
     addEventListener("resize", this.redraw);
   }
 
-  private renew(): void {
-    this.client.guard(() => this.figures?.free());
-    const shown = this.state.shown.get();
-    this.figures = shown ? this.client.figures(shown.solved) : undefined;
-    this.words.textContent = this.client.guard(() => this.figures?.describe(this.parts.name)) ?? "";
+  show(picture: Picture | undefined): void {
+    this.picture = picture;
+    this.say(picture?.words() ?? "");
     this.redraw();
+  }
+
+  /** Words for those who do not see the figure. */
+  say(words: string): void {
+    if (this.words.textContent !== words) this.words.textContent = words;
   }
 
   private draw(): void {
     const width = Math.floor(this.frame.clientWidth);
-    if (width === 0 || !this.figures) return;
+    if (width === 0 || !this.picture) return;
     const height = Math.round(this.parts.height(width));
     for (const canvas of [this.base, this.layer]) {
       canvas.style.width = `${width}px`;
@@ -64,18 +73,10 @@ export class Figure {
     }
     // Lines sit on whole device pixels: at least two a CSS pixel keep them smooth.
     const scale = Math.max(2, devicePixelRatio);
-    const options = {
-      width,
-      height,
-      scale,
-      theme: this.state.theme.get(),
-      stale: this.state.verdict.get().link === null,
-      ...this.parts.view?.(),
-    };
-    const figures = this.figures;
-    const map = this.client.guard(() => figures.draw(this.base, this.parts.name, options));
-    this.failed.hidden = map !== undefined;
-    this.panels = map?.panels ?? [];
+    const options = { width, height, scale, theme: this.state.theme.get(), stale: this.parts.stale(), ...this.parts.view?.() };
+    const panels = this.picture.draw(this.base, options);
+    this.failed.hidden = panels !== undefined;
+    this.panels = panels ?? [];
     this.layer.width = Math.round(width * scale);
     this.layer.height = Math.round(height * scale);
     this.drawOverlay();
@@ -90,6 +91,24 @@ export class Figure {
     context.setTransform(scale, 0, 0, scale, 0, 0);
     this.parts.overlay(context, this.panels);
   }
+}
+
+/** A figure of the flight that the page shows, whichever that is. */
+export function flightFigure(state: State, client: Client, name: FigureName, parts: Omit<FigureParts, "name" | "stale">): Figure {
+  const figure = new Figure(state, { ...parts, name, stale: () => state.verdict.get().link === null });
+  let figures: Figures | undefined;
+  state.shown.watch((shown) => {
+    client.guard(() => figures?.free());
+    const mine = shown ? client.figures(shown.solved) : undefined;
+    figures = mine;
+    figure.show(
+      mine && {
+        draw: (canvas, options) => client.guard(() => mine.draw(canvas, name, options))?.panels,
+        words: () => client.guard(() => mine.describe(name)) ?? "",
+      },
+    );
+  });
+  return figure;
 }
 
 /** Place of a value in a panel, CSS pixels from the left and the top. */

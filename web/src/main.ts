@@ -10,6 +10,7 @@ import { mountAnswer } from "./panels/answer";
 import { mountAssumptions } from "./panels/assumptions";
 import { mountChecks } from "./panels/checks";
 import { mountCompare } from "./panels/compare";
+import { mountDepartures } from "./panels/departures";
 import { mountFooter } from "./panels/footer";
 import { mountHistories } from "./panels/histories";
 import { mountInputs } from "./panels/inputs";
@@ -22,6 +23,8 @@ import { State } from "./state";
 
 /** One that answers and one ready to take its place. */
 const WORKERS = 2;
+/** Workers of a study: as many as there are processors, within reason. Their number changes no result. */
+const STUDY_WORKERS = Math.min(8, Math.max(1, navigator.hardwareConcurrency || 2));
 
 async function open(): Promise<void> {
   const module = await openModule();
@@ -65,8 +68,8 @@ async function open(): Promise<void> {
   const first = verdictNow();
   if (first !== null) take(first, client.askHere(first));
 
-  const page: Page = { state, client };
-  for (const mount of [mountMasthead, mountInputs, mountNotice, mountAnswer, mountOrbit, mountCompare, mountHistories, mountProof, mountChecks])
+  const page: Page = { state, client, studies: new Pool(startWorker, module, STUDY_WORKERS) };
+  for (const mount of [mountMasthead, mountInputs, mountNotice, mountAnswer, mountOrbit, mountCompare, mountHistories, mountProof, mountDepartures, mountChecks])
     mount(page);
   mountAssumptions();
   mountFooter(page);

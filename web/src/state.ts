@@ -4,13 +4,14 @@ import {
   CONTROLS,
   ELEMENTS,
   LIGHTNESS,
-  ORBIT_KEYS,
+  LIST_KEYS,
   WITH_FIELD,
-  elementKey,
   isAsked,
+  pieceKey,
   untouched,
   type Control,
   type CraftBy,
+  type ListKey,
   type OrbitKey,
   type Scenario,
 } from "./controls";
@@ -72,9 +73,9 @@ export class State {
   /** Takes over every key's value from the core, as it does when a link opens. */
   load(checked: Checked): void {
     const texts: Record<string, string> = Object.fromEntries(checked.entries);
-    for (const key of ORBIT_KEYS) {
+    for (const key of LIST_KEYS) {
       const values = texts[key] ? texts[key].split(",") : [];
-      ELEMENTS.forEach(({ name }, i) => (texts[elementKey(key, name)] = values[i] ?? ""));
+      piecesOf(key).forEach((control, i) => (texts[control.key] = values[i] ?? ""));
       delete texts[key];
     }
     const craftBy = texts.ac_mm_s2 ? "acceleration" : "size";
@@ -84,12 +85,20 @@ export class State {
     this.scenario.set({ texts, craftBy, pinned: new Set(pinned) });
   }
 
+  /** Opens one flight of a study: takes over its keys and keeps the study's own. */
+  open(checked: Checked): void {
+    const kept = Object.fromEntries(CONTROLS.filter(({ group }) => group === "departures").map(({ key }) => [key, this.scenario.get().texts[key] ?? ""]));
+    this.load(checked);
+    const scenario = this.scenario.get();
+    this.scenario.set({ ...scenario, texts: { ...scenario.texts, ...kept } });
+  }
+
   edit(key: string, text: string): void {
     const { texts, craftBy, pinned } = this.scenario.get();
     if (texts[key] === text) return;
     const next = { ...texts, [key]: text };
     // An orbit that has no size yet starts from the one it takes the place of.
-    if ((key === "from" || key === "to") && text === "orbit" && !texts[elementKey(`${key}_orbit`, "a_au")]) {
+    if ((key === "from" || key === "to") && text === "orbit" && !texts[pieceKey(`${key}_orbit`, "a_au")]) {
       const report = this.shown.get()?.solved.report;
       if (report) Object.assign(next, elementsOf(`${key}_orbit`, report.ends[key], report.flight.depart));
     }
@@ -127,25 +136,27 @@ export class State {
     for (const control of CONTROLS) {
       if (!isAsked(control, scenario)) continue;
       const text = texts[control.key] ?? "";
-      if (control.element) continue;
+      if (control.piece || !this.isKnown(control.key)) continue;
       if (control.key === LIGHTNESS) entries.push(["ac_mm_s2", this.accelerationOf(text)]);
       // An optional field left empty is left out; any other empty field is for the core to refuse.
       else if (text !== "" || this.isNeeded(control.key)) entries.push([control.key, text]);
     }
-    for (const key of ORBIT_KEYS) {
-      const orbit = this.orbitText(key);
-      if (orbit !== null) entries.push([key, orbit]);
+    for (const key of LIST_KEYS) {
+      const list = this.isKnown(key) ? this.listText(key) : null;
+      if (list !== null) entries.push([key, list]);
     }
     return compose([...entries, ...this.extras()]);
   }
 
-  /** The elements that are asked for as one list; trailing ones that were left empty are left out. */
-  private orbitText(key: OrbitKey): string | null {
+  /** The parts that are asked for as one list; trailing ones that were left empty are left out. */
+  private listText(key: ListKey): string | null {
     const scenario = this.scenario.get();
-    const controls = CONTROLS.filter((control) => control.element?.key === key);
+    const controls = piecesOf(key);
     const values = controls.map((control) => (isAsked(control, scenario) ? (scenario.texts[control.key] ?? "") : ""));
-    if (!controls.some((control) => isAsked(control, scenario))) return null;
     const last = values.findLastIndex((value) => value !== "");
+    // An orbit that is asked for needs its size; other lists may be left out whole.
+    const needed = controls.some((control) => control.standing !== undefined && isAsked(control, scenario));
+    if (last < 0 && !needed) return null;
     return controls
       .slice(0, Math.max(1, last + 1))
       .map((control, i) => (values[i] || (control.standing ?? "")).replaceAll(",", NO_COMMA))
@@ -177,14 +188,19 @@ export class State {
     const whole = asked.find((control) => control.key === (error.key === "ac_mm_s2" && scenario.craftBy === "lightness" ? LIGHTNESS : error.key));
     if (whole) return whole;
     // The core names the element in the first word of the rule; what concerns the list as a whole goes to the first.
-    const elements = asked.filter((control) => control.element?.key === error.key);
-    return elements.find((control) => error.rule.startsWith(`${control.element?.name} `)) ?? elements[0];
+    const elements = asked.filter((control) => control.piece?.key === error.key);
+    return elements.find((control) => error.rule.startsWith(`${control.piece?.name} `)) ?? elements[0];
   }
 
   /** Whether what is shown answers what is typed. */
   matches(): boolean {
     const link = this.verdict.get().link;
     return link !== null && this.shown.get()?.link === link;
+  }
+
+  /** Whether the core has this key, or the page converts it. */
+  private isKnown(key: string): boolean {
+    return key === LIGHTNESS || key in this.defaults;
   }
 
   private isNeeded(key: string): boolean {
@@ -195,6 +211,10 @@ export class State {
     const value = Number(lightness);
     return lightness.trim() === "" || !Number.isFinite(value) ? lightness : String(value * this.sunGravity_mm_s2);
   }
+}
+
+function piecesOf(key: ListKey): Control[] {
+  return CONTROLS.filter((control) => control.piece?.key === key);
 }
 
 /** The fields that describe this orbit; where its body is only with a date. */
@@ -210,5 +230,5 @@ function elementsOf(key: OrbitKey, end: End, depart: string | null): Record<stri
     ...(dated ? [end.mean_anomaly_deg, day / 86_400_000 + UNIX_EPOCH_JD] : []),
   ];
   const written = (value: number | null, i: number) => (!value ? "" : String(Number(value.toPrecision(i === 6 ? 10 : 6))));
-  return Object.fromEntries(values.map((value, i) => [elementKey(key, ELEMENTS[i]?.name ?? ""), written(value, i)]));
+  return Object.fromEntries(values.map((value, i) => [pieceKey(key, ELEMENTS[i]?.name ?? ""), written(value, i)]));
 }

@@ -7,6 +7,8 @@
 mod axis;
 mod bodies;
 mod calendar;
+mod departure_map;
+mod departures;
 mod describe;
 mod ellipse;
 mod geometry;
@@ -35,6 +37,8 @@ mod view;
 use scenario::report::{Columns, Report};
 use serde::{Deserialize, Serialize};
 
+pub use departure_map::{DepartureMap, MapCell, departure_map};
+pub use departures::{Departure, Departures, departures};
 pub use describe::describe;
 pub use paint::{PaintError, paint};
 pub use shapes::{Anchor, Point, Shape, Stroke, Text, Weight};

@@ -44,16 +44,15 @@ impl FromEarth {
 ///
 /// # Example
 /// ```
-/// use nalgebra::Vector3;
 /// use orbits::geometry::from_earth;
 /// // From the Sun's centre light takes a little over eight minutes.
-/// let sun = from_earth(&Vector3::zeros(), 0.0)?;
+/// let sun = from_earth([0.0; 3], 0.0)?;
 /// assert!((sun.light_time_s() / 60.0 - 8.17).abs() < 0.01);
 /// # Ok::<(), orbits::argument::BadArgument>(())
 /// ```
-pub fn from_earth(craft_au: &Vector3<f64>, j2000_d: f64) -> Result<FromEarth, BadArgument> {
+pub fn from_earth(craft_au: [f64; 3], j2000_d: f64) -> Result<FromEarth, BadArgument> {
     let earth = Traveller::Planet(Planet::Earth).state(j2000_d)?.position;
-    let to_craft = craft_au - earth;
+    let to_craft = Vector3::from(craft_au) - earth;
     let range_au = to_craft.norm();
     let apart = range_au > TOGETHER_AU;
     let sun_earth_craft_deg = apart.then(|| angle_deg(&-earth, &to_craft));
@@ -110,7 +109,7 @@ mod tests {
         // From memory (high confidence): opposition 2003-08-28 17:59 UT, when geocentric longitudes differ by 180 deg;
         // Mars stood about 6.6 deg south of the ecliptic, which is what is left (0.1 deg for the digits quoted).
         let instant = start_of_day(2003, 8, 28).unwrap() + 18.0 / 24.0;
-        let seen = from_earth(&planet(Planet::Mars, instant), instant).unwrap();
+        let seen = from_earth(planet(Planet::Mars, instant).into(), instant).unwrap();
         assert!((seen.sun_earth_craft_deg.unwrap() - (180.0 - 6.6)).abs() < 0.2, "{seen:?}");
         let phase =
             phase_angle_deg(&Traveller::Planet(Planet::Mars), &Traveller::Planet(Planet::Earth), instant)
@@ -124,16 +123,16 @@ mod tests {
         // From memory (high confidence): greatest elongations 2004-03-29, 46.0 deg east, and 2004-08-17, 45.8 deg west.
         for (year, month, day, expected) in [(2004, 3, 29, 46.0), (2004, 8, 17, 45.8)] {
             let instant = start_of_day(year, month, day).unwrap() + 0.5;
-            let seen = from_earth(&planet(Planet::Venus, instant), instant).unwrap();
+            let seen = from_earth(planet(Planet::Venus, instant).into(), instant).unwrap();
             assert!((seen.sun_earth_craft_deg.unwrap() - expected).abs() < 0.1, "{seen:?}");
         }
     }
 
     #[test]
     fn a_craft_at_the_earth_has_no_direction() {
-        let here = from_earth(&planet(Planet::Earth, 5_000.0), 5_000.0).unwrap();
+        let here = from_earth(planet(Planet::Earth, 5_000.0).into(), 5_000.0).unwrap();
         assert_eq!(here, FromEarth { range_au: 0.0, sun_earth_craft_deg: None });
-        assert!(from_earth(&Vector3::x(), f64::NAN).is_err());
+        assert!(from_earth([1.0, 0.0, 0.0], f64::NAN).is_err());
     }
 
     #[test]
@@ -155,7 +154,7 @@ mod tests {
         ) {
             // Law of cosines: distance from the Sun from the other two sides and the angle at the Earth.
             let craft = Vector3::new(x, y, z);
-            let seen = from_earth(&craft, j2000_d).unwrap();
+            let seen = from_earth(craft.into(), j2000_d).unwrap();
             prop_assume!(seen.range_au > 1e-3);
             let side = planet(Planet::Earth, j2000_d).norm();
             let cos = seen.sun_earth_craft_deg.unwrap().to_radians().cos();

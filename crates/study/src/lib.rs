@@ -4,3 +4,4 @@
 //! unseeded randomness, files.
 
 pub mod deadline;
+pub mod departures;

@@ -6,7 +6,7 @@
 
 use std::collections::BTreeMap;
 
-use figures::FigureOptions;
+use figures::{Figure, FigureMap, FigureOptions};
 use js_sys::{Error, Float64Array, Object, Reflect};
 use plotters_canvas::CanvasBackend;
 use scenario::link::{self, LinkError};
@@ -155,12 +155,7 @@ impl Figures {
     pub fn draw(&self, canvas: HtmlCanvasElement, name: &str, options: JsValue) -> Result<JsValue, Error> {
         let options: FigureOptions = from_js(options)?;
         let figure = figures::layout(name, &self.report, &self.columns, &options).map_err(plain_error)?;
-        // Setting the size also clears what was drawn before.
-        canvas.set_width((options.width * options.scale).round() as u32);
-        canvas.set_height((options.height * options.scale).round() as u32);
-        let mut backend = CanvasBackend::with_canvas_object(canvas)
-            .ok_or_else(|| Error::new("this canvas cannot be drawn on"))?;
-        figures::paint(&figure, options.scale, &mut backend).map_err(plain_error)?;
+        paint(&figure, options.scale, canvas)?;
         to_js(&figure.map)
     }
 
@@ -171,6 +166,60 @@ impl Figures {
     pub fn describe(&self, name: &str) -> Result<String, Error> {
         figures::describe(name, &self.report, &self.columns).map_err(plain_error)
     }
+}
+
+/// What a drawn study tells the page.
+#[derive(Serialize)]
+struct DrawnStudy {
+    /// Where its panels are.
+    #[serde(flatten)]
+    map: FigureMap,
+    /// What a reader would see.
+    words: String,
+}
+
+/// Draws a study of departure dates to fill the canvas: `{panels, words}`.
+///
+/// # Errors
+/// A study of another shape, options that do not exist, or a canvas that cannot be drawn on.
+#[wasm_bindgen]
+pub fn draw_departures(
+    canvas: HtmlCanvasElement,
+    study: JsValue,
+    options: JsValue,
+) -> Result<JsValue, Error> {
+    let options: FigureOptions = from_js(options)?;
+    let figure = figures::departures(&from_js(study)?, &options).map_err(plain_error)?;
+    draw_study(figure, options.scale, canvas)
+}
+
+/// Draws a study over departure dates and accelerations to fill the canvas: `{panels, words}`.
+///
+/// # Errors
+/// A study of another shape, options that do not exist, or a canvas that cannot be drawn on.
+#[wasm_bindgen]
+pub fn draw_departure_map(
+    canvas: HtmlCanvasElement,
+    study: JsValue,
+    options: JsValue,
+) -> Result<JsValue, Error> {
+    let options: FigureOptions = from_js(options)?;
+    let figure = figures::departure_map(&from_js(study)?, &options).map_err(plain_error)?;
+    draw_study(figure, options.scale, canvas)
+}
+
+fn draw_study(figure: Figure, scale: f64, canvas: HtmlCanvasElement) -> Result<JsValue, Error> {
+    paint(&figure, scale, canvas)?;
+    to_js(&DrawnStudy { words: figure.description, map: figure.map })
+}
+
+fn paint(figure: &Figure, scale: f64, canvas: HtmlCanvasElement) -> Result<(), Error> {
+    // Setting the size also clears what was drawn before.
+    canvas.set_width((figure.width * scale).round() as u32);
+    canvas.set_height((figure.height * scale).round() as u32);
+    let mut backend = CanvasBackend::with_canvas_object(canvas)
+        .ok_or_else(|| Error::new("this canvas cannot be drawn on"))?;
+    figures::paint(figure, scale, &mut backend).map_err(plain_error)
 }
 
 /// The one shape of failure that the page handles: a real `Error` with every problem in `detail`.

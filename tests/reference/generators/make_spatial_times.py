@@ -4,6 +4,7 @@ The table is written again after every row, and a row of the same case is replac
 it had, and `make_spatial_times.py orbit mercury` redoes only the rows of that kind and target.
 """
 
+import dataclasses
 import datetime
 import json
 import math
@@ -81,6 +82,41 @@ def search_orbit(problem):
         if freed is not None:
             found[name] = freed
     return found, tried, windows
+
+
+def search_orbit_by_shape(problem, count=8, steps=(0.1, 0.3, 0.5, 0.7, 0.85, 1.0)):
+    """For eccentric targets many revolutions away: eccentricity and inclination grow in steps, each flight the next guess.
+
+    Departure stays within a window of the start while the shape grows. Returns the same as search_orbit.
+    """
+    found, windows = {}, []
+    plane = plane_direct.best_flight(problem.beta, TARGETS_AU[problem.target])
+    mesh = np.linspace(0, 1, max(30, math.ceil(plane["angle"] / (2 * math.pi) * 20)) + 1)
+    programs = [direct.Transcription(dataclasses.replace(problem, shape=shape), mesh, 30.0) for shape in steps]
+    for name, guess in guesses.orbit_guesses(problem, plane, count, 1.2 * math.pi / count):
+        centre = guess["anomaly"][0]
+        for program in programs:
+            held = program.solve(guess)
+            if held is None:
+                break
+            guess = direct.as_guess(held)
+            guess["window"] = max(1e-3, 1.2 * math.pi / count - abs(guess["anomaly"][0] - centre))
+        if held is None:
+            continue
+        start, edge = held["states"][:, 0], abs(held["anomaly"][0] - centre) > 1.19 * math.pi / count
+        windows.append(
+            {
+                "guess": f"growing shape, {name}",
+                "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
+                "time_d": round(held["t_f"] * TIME_UNIT_D, 3),
+                "at_window_edge": bool(edge),
+            }
+        )
+        print(windows[-1], flush=True)
+        freed = programs[-1].solve(direct.as_guess(held))
+        if freed is not None:
+            found[windows[-1]["guess"]] = freed
+    return found, count, windows
 
 
 def search_rendezvous(problem, t_plane):

@@ -33,13 +33,18 @@ IPOPT = {
 
 @dataclass(frozen=True)
 class Problem:
-    """One flight from the Earth's orbit. depart_d: days of TDB since J2000, None for an orbit match."""
+    """One flight from the Earth's orbit. depart_d: days of TDB since J2000, None for an orbit match.
+
+    shape scales eccentricity and inclination of the target's orbit in an orbit match: 1 is the problem itself, less
+    than 1 a step on the way from the coplanar circle.
+    """
 
     target: str
     beta: float
     depart_d: float | None = None
     vinf_km_s: float = 0.0
     vinf_arrive_km_s: float = 0.0
+    shape: float = 1.0
 
     @property
     def rendezvous(self):
@@ -50,6 +55,8 @@ def end_state(problem, body, eccentric, t_f):
     """State (6 x 1 symbol) of a body at departure (t_f None) or arrival, and Kepler's equation as a residual or None."""
     if not problem.rendezvous:
         a, e, inclination, _, arg, node = elements.elements_at(body, 0.0)
+        if body == problem.target:
+            e, inclination = problem.shape * e, problem.shape * inclination
         position, velocity = elements.state_on_ellipse(a, e, inclination, arg, node, eccentric)
         return ca.vertcat(*position, *velocity), None
     days = problem.depart_d + t_f * TIME_UNIT_D

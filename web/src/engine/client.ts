@@ -1,5 +1,5 @@
 // The page's side of the engine: checks at once, solves in a worker, and the newest question wins.
-import { answer, openCore, type Checked, type Core, type Figures } from "./core";
+import { answer, openCore, type Checked, type Core, type DrawnStudy, type Figures } from "./core";
 import type { Job, Pool } from "./pool";
 import type { Outcome, Solved } from "./protocol";
 import type { CheckRow } from "./report";
@@ -43,6 +43,11 @@ export class Client {
   /** Pictures of one flight; undefined when the core failed on it, after which a fresh core stands ready. */
   figures(solved: Solved): Figures | undefined {
     return this.guard(() => new this.core.Figures(solved.report, solved.columns));
+  }
+
+  /** Draws a study; undefined when the core failed on it. */
+  drawStudy(draw: (core: Core) => DrawnStudy): DrawnStudy | undefined {
+    return this.guard(() => draw(this.core));
   }
 
   /** Runs a call that may trap; undefined when it did, after which a fresh core stands ready. */

@@ -1,5 +1,6 @@
 // The compiled core behind typed calls, and the one place that tells wrong input from a crash.
 import { openGlue } from "../../pkg/glue";
+import { evaluate } from "./dates";
 import type { Outcome, Question, Solved } from "./protocol";
 import type { CheckRow, Example, KeyInfo, LinkError, Program, Report } from "./report";
 
@@ -55,6 +56,38 @@ export interface FigurePanel {
   center_y: number | null;
 }
 
+/** A study of departure dates, as its figure takes it. */
+export interface Departures {
+  start: string;
+  span_d: number;
+  step_d: number;
+  ends: string;
+  rows: {
+    depart: string;
+    depart_d: number;
+    time_d: number | null;
+    arrive: string | null;
+    breaks_law: boolean;
+    best: boolean;
+    earliest: boolean;
+  }[];
+}
+
+/** A study over dates and accelerations, as its figure takes it. */
+export interface DepartureMap {
+  start: string;
+  step_d: number;
+  dates: number;
+  ac_mm_s2: number[];
+  ends: string;
+  cells: { date: number; ac: number; time_d: number | null; breaks_law: boolean; best: boolean }[];
+}
+
+export interface DrawnStudy {
+  panels: FigurePanel[];
+  words: string;
+}
+
 export interface Figures {
   draw(canvas: HTMLCanvasElement, name: FigureName, options: FigureOptions): { panels: FigurePanel[] };
   describe(name: FigureName): string;
@@ -71,6 +104,8 @@ export interface Core {
   default_link(): string;
   examples(): Example[];
   theme_tokens(theme: Theme): Record<string, string>;
+  draw_departures(canvas: HTMLCanvasElement, study: Departures, options: FigureOptions): DrawnStudy;
+  draw_departure_map(canvas: HTMLCanvasElement, study: DepartureMap, options: FigureOptions): DrawnStudy;
   Figures: new (report: Report, columns: Float64Array) => Figures;
 }
 
@@ -84,6 +119,7 @@ export function openCore(module: WebAssembly.Module): Core {
 /** Answers one question and never throws. */
 export function answer(core: Pick<Core, "solve" | "published_checks">, question: Question): Outcome {
   try {
+    if (question.ask === "study") return { is: "rows", rows: evaluate(core, question.plan, question.chunk) };
     if (question.ask === "checks") return { is: "checked", checks: core.published_checks() };
     const start = performance.now();
     const solved = core.solve(question.link);

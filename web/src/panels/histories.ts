@@ -1,7 +1,7 @@
 // Histories on one time axis, with the time cursor that the orbit picture shares.
 import { h, part, table } from "../dom";
 import type { Histories } from "../engine/histories";
-import { Figure, place, token } from "../figure";
+import { flightFigure, place, token } from "../figure";
 import { NONE, fixed, significant, withUnit } from "../format";
 import { valueOf } from "../link";
 import type { Page } from "./page";
@@ -40,8 +40,7 @@ export function mountHistories({ state, client }: Page): void {
     return shown?.histories.has(column) ?? false;
   };
   const drawn = () => LINES.filter((line) => wanted.has(line.column) && tells(line)).map((line) => line.column);
-  const figure = new Figure(state, client, {
-    name: "histories",
+  const figure = flightFigure(state, client, "histories", {
     height: () => 32 + PANEL_PX * Math.max(1, drawn().length),
     view: () => ({ panels: drawn() }),
     overlay: (context, panels) => {

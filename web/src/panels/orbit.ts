@@ -2,7 +2,7 @@
 import { drawCraft } from "../craft-mark";
 import { h, part, table } from "../dom";
 import type { Histories } from "../engine/histories";
-import { Figure, project } from "../figure";
+import { flightFigure, project } from "../figure";
 import { fixed } from "../format";
 import { valueOf } from "../link";
 import type { Page } from "./page";
@@ -38,8 +38,7 @@ export function mountOrbit({ state, client }: Page): void {
   let way: "tilt" | "move" = "tilt";
   const inSpace = () => valueOf(state.shown.get()?.link ?? "", "geometry") === "spatial";
   const isDated = () => (state.shown.get()?.solved.report.flight.depart ?? null) !== null;
-  const figure = new Figure(state, client, {
-    name: "orbit",
+  const figure = flightFigure(state, client, "orbit", {
     height: (width) => Math.min(width, Math.max(320, innerHeight - 120)),
     view: () => {
       const { tilt_deg, turn_deg, ...flat } = view;

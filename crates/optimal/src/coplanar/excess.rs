@@ -30,14 +30,14 @@ pub struct Problem {
 /// How the answer was found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Route {
-    /// Both allowances grew together.
+    /// Both allowances grew together (or there was nothing to grow).
     Together,
     /// The arrival's grew first.
     ArrivalFirst,
     /// The departure's grew first.
     DepartureFirst,
-    /// With a stronger sail first, weakened afterwards.
-    Stronger,
+    /// From the flight of a stronger sail, or to a nearer target.
+    Neighbour,
 }
 
 /// A solved (or nearly solved) extremal, in units of the start radius.
@@ -258,31 +258,47 @@ fn by_way(at: &Shooting, plain: Unknowns, goal: f64) -> Option<(Unknowns, Route)
         .or_else(|| in_turn(departure).map(|x| (x, Route::DepartureFirst)))
 }
 
-/// Factors on the lightness number for what cannot be reached otherwise.
-const STRONGER: [f64; 3] = [1.5, 2.2, 4.0];
+/// Neighbours from which to come where no way leads from the flight without excess: factor on the lightness number,
+/// power of the ratio of radii.
+const NEIGHBOURS: [(f64, f64); 6] = [(1.5, 1.0), (2.2, 1.0), (4.0, 1.0), (1.0, 0.8), (1.0, 0.6), (8.0, 1.0)];
 
-fn by_stronger_sail(problem: &Problem, factor: f64, goal: f64) -> Option<(Unknowns, Route)> {
-    let lightness = problem.circles.lightness;
-    let circles = solve::Problem { lightness: lightness * factor, ..problem.circles };
-    let at = Shooting::of(&Problem { circles, ..*problem }, CARRY.0);
-    let (strong, _) = by_way(&at, without_excess(&circles)?.unknowns, goal)?;
+/// The flight found for a neighbour, carried over.
+fn by_neighbour(problem: &Problem, (factor, power): (f64, f64), goal: f64) -> Option<(Unknowns, Route)> {
+    let circles = problem.circles;
+    let at = |share: f64| {
+        let lightness = circles.lightness * factor.powf(1.0 - share);
+        let target_radius = circles.start_radius * circles.ratio().powf(power + share * (1.0 - power));
+        let circles = solve::Problem { lightness, target_radius, ..circles };
+        Shooting::of(&Problem { circles, ..*problem }, CARRY.0)
+    };
+    let first = at(0.0);
+    let plain = without_excess(&solve::Problem {
+        start_radius: 1.0,
+        target_radius: first.ratio,
+        lightness: first.lightness,
+    })?;
+    let (there, _) = by_way(&first, plain.unknowns, goal)?;
     let solve = |share: f64, guess: Unknowns| {
-        let weaker = Shooting { lightness: lightness * factor.powf(1.0 - share), ..at };
-        let solved = refine(&weaker, guess, goal, 8)?;
-        let held = solved.converged && near(&guess, &solved.point) && weaker.hamiltonian(&solved.point) > 0.0;
+        let between = at(share);
+        let solved = refine(&between, guess, goal, 8)?;
+        let held =
+            solved.converged && near(&guess, &solved.point) && between.hamiltonian(&solved.point) > 0.0;
         held.then_some((solved.point, solved.passes))
     };
-    let point = follow(strong, &PACE, solve, Unknowns::extrapolated).ok()?;
-    Some((point, Route::Stronger))
+    let point = follow(there, &PACE, solve, Unknowns::extrapolated).ok()?;
+    Some((point, Route::Neighbour))
 }
 
 /// Solves `problem`; `None` when every route failed. The radii must differ by more than one part in ten million.
 pub fn solve(problem: &Problem) -> Option<Extremum> {
     let plain = without_excess(&problem.circles)?;
+    if !problem.allowance.is_some() {
+        return Some(Extremum { unknowns: plain.unknowns, residual: plain.residual, route: Route::Together });
+    }
     let gap = problem.circles.ratio().ln().abs();
     let goal = CARRY.1.min(1e-3 * gap);
     let (rough, route) = by_way(&Shooting::of(problem, CARRY.0), plain.unknowns, goal)
-        .or_else(|| STRONGER.into_iter().find_map(|factor| by_stronger_sail(problem, factor, goal)))?;
+        .or_else(|| NEIGHBOURS.into_iter().find_map(|from| by_neighbour(problem, from, goal)))?;
     let polished = refine(&Shooting::of(problem, POLISH.0), rough, POLISH.1.min(1e-5 * gap), 8)?;
     Some(Extremum { unknowns: polished.point, residual: polished.residual, route })
 }

@@ -8,7 +8,9 @@ use numerics::arclength::{self, Ended, Stride};
 use numerics::continuation::{Pace, follow};
 use numerics::newton::{Goal, Solved, newton};
 
-use super::excess_rows::Granting;
+use super::ends::coasting_rate;
+use super::excess_rows::{Granting, launched};
+use super::extremal::Extremal;
 use super::polish::{Conditions, Exactness, Flight, Kind};
 use super::prove::{Flown, prove_granted};
 use super::rendezvous::same;
@@ -59,6 +61,19 @@ pub fn granted(
     }
     found.sort_by(|a, b| a.flight.time.total_cmp(&b.flight.time));
     found
+}
+
+/// Rate of the arrival instant with the departure instant of a rendezvous,
+/// (l_r . w + p . a_sail)/lambda_0 at departure, w the excess velocity and lambda_0 what the flight gains by arriving a
+/// moment later.
+///
+/// Without departure excess it is never negative (a sail may wait edge-on); with it, leaving later may arrive earlier.
+pub fn arrival_slope(conditions: &Conditions<'_>, allowance: &Allowance, flown: &Flown) -> Option<f64> {
+    let body = (conditions.from)(flown.flight.departure)?;
+    let y = launched(body, flown.flight.costate.into(), allowance.departure);
+    let extremal = Extremal { lightness: conditions.lightness };
+    let gained = extremal.hamiltonian(&y) - (0..6).map(|i| y[6 + i] * coasting_rate(&body)[i]).sum::<f64>();
+    Some(gained / flown.evidence.hamiltonian_at_arrival)
 }
 
 /// Grows both allowances together, and where that does not end in a minimum one after the other.

@@ -1,5 +1,6 @@
 //! Minimum time between orbits in space: Cartesian states and costates, canonical units (au).
 
+pub mod calendar;
 pub mod curves;
 pub mod ends;
 pub mod excess;
