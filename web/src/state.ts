@@ -70,27 +70,21 @@ export class State {
     this.theme = new Cell(theme);
   }
 
-  /** Takes over every key's value from the core, as it does when a link opens. */
-  load(checked: Checked): void {
+  /** Takes over every key's value from the core, as it does when a link opens; fields of `kept` groups stay. */
+  load(checked: Checked, kept: readonly Control["group"][] = []): void {
     const texts: Record<string, string> = Object.fromEntries(checked.entries);
     for (const key of LIST_KEYS) {
       const values = texts[key] ? texts[key].split(",") : [];
       piecesOf(key).forEach((control, i) => (texts[control.key] = values[i] ?? ""));
       delete texts[key];
     }
+    const before = this.scenario.get().texts;
+    for (const { key, group } of CONTROLS) if (kept.includes(group)) texts[key] = before[key] ?? "";
     const craftBy = texts.ac_mm_s2 ? "acceleration" : "size";
     const bare = { texts, craftBy, pinned: new Set<string>() } as const;
     const isSet = (control: Control) => texts[control.key] && texts[control.key] !== untouched(control, this.defaults);
     const pinned = CONTROLS.filter((control) => !isAsked(control, bare) && isSet(control)).map((control) => control.key);
     this.scenario.set({ texts, craftBy, pinned: new Set(pinned) });
-  }
-
-  /** Opens one flight of a study: takes over its keys and keeps the study's own. */
-  open(checked: Checked): void {
-    const kept = Object.fromEntries(CONTROLS.filter(({ group }) => group === "departures").map(({ key }) => [key, this.scenario.get().texts[key] ?? ""]));
-    this.load(checked);
-    const scenario = this.scenario.get();
-    this.scenario.set({ ...scenario, texts: { ...scenario.texts, ...kept } });
   }
 
   edit(key: string, text: string): void {

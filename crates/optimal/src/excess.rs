@@ -37,6 +37,27 @@ impl Allowance {
     }
 }
 
+/// Most by which an allowance grows in one go: with larger pieces a followed flight may slip to another branch.
+const PIECE: f64 = 0.1;
+
+/// The way from one allowance to another in pieces.
+pub(crate) fn pieces([from, to]: [Allowance; 2]) -> impl Iterator<Item = [Allowance; 2]> {
+    let longest = (to.departure - from.departure).abs().max((to.arrival - from.arrival).abs());
+    let count = (longest / PIECE).ceil().max(1.0) as u32;
+    let at = move |part: u32| {
+        if part == count {
+            return to;
+        }
+        let share = f64::from(part) / f64::from(count);
+        let between = |from: f64, to: f64| from + (to - from) * share;
+        Allowance {
+            departure: between(from.departure, to.departure),
+            arrival: between(from.arrival, to.arrival),
+        }
+    };
+    (0..count).map(move |part| [at(part), at(part + 1)])
+}
+
 /// How long after departure a primer that starts at zero is taken up, so that it has a direction.
 pub(crate) const MOMENT: f64 = 1e-9;
 

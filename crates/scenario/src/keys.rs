@@ -191,6 +191,26 @@ pub const KEYS: &[KeyInfo] = &[
         .help("Mass of everything but sail assembly and payload."),
     KeyInfo::number("segments", "Attitude segments", "a whole number, 1 to 200", [1.0, 200.0])
         .help("Constant attitude in this many segments of equal duration, instead of smooth steering."),
+    KeyInfo::text("span", "Departures between", "two dates YYYY-MM-DD within 1800-01-01 to 2050-12-31, the earlier first")
+        .default("2030-01-01,2034-01-01")
+        .help("For studies of departure dates: the first date and the last."),
+    KeyInfo::number("step_d", "Step between departures", "a whole number, 1 to 1000", [1.0, 1000.0])
+        .unit("d")
+        .default("10")
+        .help("For studies of departure dates."),
+    KeyInfo::text(
+        "ac_range",
+        "Accelerations studied",
+        "smallest and largest, 0.01 to 20 mm/s², and how many, 2 to 200: three numbers",
+    )
+    .default("0.5,3,20")
+    .help("For the map of departure dates: characteristic accelerations in equal ratios, ends included."),
+    KeyInfo::text(
+        "area_range",
+        "Sail areas studied",
+        "smallest and largest, 0.001 to 1000000000 m², and how many, 2 to 200: three numbers",
+    )
+    .help("For the map of departure dates: sail areas, in equal ratios, instead of accelerations; mass as given."),
 ];
 
 /// The table's row for a key.

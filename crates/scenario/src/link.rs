@@ -13,7 +13,7 @@ use std::fmt;
 use serde::{Deserialize, Serialize};
 
 use crate::keys::KEYS;
-use crate::schema::{CraftInput, Film, OrbitInput, Place, Scenario, Word};
+use crate::schema::{CraftInput, Film, OrbitInput, Place, Range, Scenario, Word};
 
 /// Longest link, characters.
 pub const LINK_CHARACTERS: usize = 2000;
@@ -167,12 +167,20 @@ pub(crate) fn entry(scenario: &Scenario, key: &str) -> String {
         "assembly_g_m2" => optional(s.assembly_g_m2),
         "bus_kg" => optional(s.bus_kg),
         "segments" => s.segments.map_or_else(String::new, |count| count.to_string()),
+        "span" => s.study.span.map(|date| date.to_string()).join(","),
+        "step_d" => s.study.step_d.to_string(),
+        "ac_range" => range(&s.study.ac_range),
+        "area_range" => s.study.area_range.as_ref().map_or_else(String::new, range),
         _ => String::new(),
     }
 }
 
 fn join(values: &[f64]) -> String {
     values.iter().copied().map(value::write).collect::<Vec<_>>().join(",")
+}
+
+fn range(range: &Range) -> String {
+    join(&[range.first, range.last, f64::from(range.count)])
 }
 
 fn place_word(place: &Place) -> &'static str {

@@ -53,6 +53,8 @@ pub struct Scenario {
     pub bus_kg: Option<f64>,
     /// Number of constant-attitude segments of equal duration; `None`: smooth steering.
     pub segments: Option<u32>,
+    /// What studies of this scenario vary; without effect on a single flight.
+    pub study: StudyKeys,
 }
 
 impl Default for Scenario {
@@ -80,7 +82,67 @@ impl Default for Scenario {
             assembly_g_m2: None,
             bus_kg: None,
             segments: None,
+            study: StudyKeys::default(),
         }
+    }
+}
+
+/// What studies vary.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct StudyKeys {
+    /// First and last departure date.
+    pub span: [Date; 2],
+    /// Days between departure dates.
+    pub step_d: u32,
+    /// Characteristic accelerations, mm/s^2.
+    pub ac_range: Range,
+    /// Sail areas, m^2, instead of accelerations.
+    pub area_range: Option<Range>,
+}
+
+impl Default for StudyKeys {
+    /// The defaults of link version 1, frozen like the scenario's.
+    fn default() -> Self {
+        let new_year = |year| Date { year, month: 1, day: 1 };
+        Self {
+            span: [new_year(2030), new_year(2034)],
+            step_d: 10,
+            ac_range: Range { first: 0.5, last: 3.0, count: 20 },
+            area_range: None,
+        }
+    }
+}
+
+/// Values in equal ratios, both ends included.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Range {
+    /// Smallest value.
+    pub first: f64,
+    /// Largest value.
+    pub last: f64,
+    /// How many, at least 2.
+    pub count: u32,
+}
+
+impl Range {
+    /// The values, rounded to six significant digits so that links which carry them stay short.
+    ///
+    /// # Example
+    /// ```
+    /// use scenario::schema::Range;
+    /// let range = Range { first: 0.5, last: 2.0, count: 3 };
+    /// assert_eq!(range.values(), [0.5, 1.0, 2.0]);
+    /// ```
+    pub fn values(&self) -> Vec<f64> {
+        let Range { first, last, count } = *self;
+        let ratio = (last / first).powf(1.0 / f64::from(count - 1).max(1.0));
+        let rounded = |value: f64| {
+            let decimals = 5 - value.log10().floor() as i32;
+            let scale = 10f64.powi(decimals.abs());
+            if decimals >= 0 { (value * scale).round() / scale } else { (value / scale).round() * scale }
+        };
+        let inner = (1..count - 1).map(|k| rounded(first * ratio.powi(k as i32)));
+        std::iter::once(first).chain(inner).chain([last]).collect()
     }
 }
 

@@ -314,7 +314,7 @@ fn what_is_read_can_be_written() {
     assert!(decode(&short).is_ok());
     let mut long = format!("{short}&film=optics&optics={}&ageing={tiny},{eleven}", [tiny; 6].join(","));
     for key in
-        KEYS.iter().filter(|info| info.min.is_some() && info.key != "ac_mm_s2" && info.key != "segments")
+        KEYS.iter().filter(|info| info.min.is_some() && !["ac_mm_s2", "segments", "step_d"].contains(&info.key))
     {
         // A number with many digits that lies in the range of each of these keys.
         let value = match key.key {

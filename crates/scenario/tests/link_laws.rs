@@ -7,7 +7,7 @@ use scenario::date::Date;
 use scenario::keys::KEYS;
 use scenario::link::{decode, encode, entries};
 use scenario::schema::{
-    Ageing, Arrive, Baseline, CraftInput, Film, Geometry, OrbitInput, Place, Scenario, Steer,
+    Ageing, Arrive, Baseline, CraftInput, Film, Geometry, OrbitInput, Place, Range, Scenario, Steer, StudyKeys,
 };
 
 /// Any number of a range, edges included.
@@ -65,6 +65,24 @@ fn baselines() -> impl Strategy<Value = Baseline> {
     )
 }
 
+fn ranges(min: f64, max: f64) -> impl Strategy<Value = Range> {
+    let valid = move |first: f64, ratio: f64| first * ratio <= max;
+    (number(min, max / 1.01), 1.02..1e4f64, 2u32..=200).prop_map(move |(first, ratio, count)| {
+        let last = if valid(first, ratio) { first * ratio } else { max.max(1.01 * first) };
+        Range { first, last, count }
+    })
+}
+
+fn studies() -> impl Strategy<Value = StudyKeys> {
+    let ranges = (ranges(0.01, 20.0), option::of(ranges(1e-3, 1e9)));
+    (dates(), dates(), 1u32..=1000, ranges).prop_map(|(one, other, step_d, (ac_range, area_range))| StudyKeys {
+        span: [one.min(other), one.max(other)],
+        step_d,
+        ac_range,
+        area_range,
+    })
+}
+
 prop_compose! {
     /// Any scenario that a link can carry, solved or refused. Titles are short enough to fit beside every digit.
     fn scenarios()(
@@ -81,6 +99,7 @@ prop_compose! {
         cone_deg in option::of(number(-90.0, 90.0)),
         baseline in baselines(),
         (deadline_d, assembly_g_m2) in (option::of(number(1.0, 1e5)), option::of(number(0.0, 1e3))),
+        study in studies(),
         (bus_kg, segments) in (option::of(number(0.0, 1e9)), option::of(1u32..=200)),
     ) -> Scenario {
         let ageing = ageing.map(|(factor, half_life_y)| Ageing { factor, half_life_y });
@@ -88,7 +107,7 @@ prop_compose! {
         let title = title.map(|title| title.replace(['\u{2028}', '\u{2029}'], "x"));
         Scenario {
             title, craft, film, cone_max_deg, temp_max_k, ageing, control, from, to, geometry, depart, vinf_km_s,
-            vinf_arrive_km_s, arrive, steer, cone_deg, baseline, deadline_d, assembly_g_m2, bus_kg, segments,
+            vinf_arrive_km_s, arrive, steer, cone_deg, baseline, deadline_d, assembly_g_m2, bus_kg, segments, study,
         }
     }
 }

@@ -15,6 +15,8 @@ import type { Page } from "./page";
 const AGREES = 1e-8;
 /** The pointer finds a point from this far, CSS pixels. */
 const REACH_PX = 22;
+/** Pause between two renewals of the table while rows come in, ms. */
+const LISTED_MS = 250;
 
 export function mountDepartures({ state, client, studies }: Page): void {
   let run: StudyRun | undefined;
@@ -34,12 +36,20 @@ export function mountDepartures({ state, client, studies }: Page): void {
   const spoken = h("p", { class: "unseen", role: "status" });
   const working = h("div", { class: "working", hidden: true }, bar, stop, resume);
   const verdict = h("p", { class: "note", role: "status", hidden: true });
-  const beside = h("div", { class: "beside" });
+  const chosen = h("select", { id: "departures-ac", onchange: () => run && list(run) });
+  const choice = h("p", { class: "entry", hidden: true }, h("label", { for: "departures-ac" }, "Listed at"), chosen, h("span", { class: "unit" }, "mm/s²"));
+  const framed = h("div");
+  const beside = h("div", { class: "beside" }, choice, framed);
+  let listing: ReturnType<typeof setTimeout> | undefined;
+  let begun: StudyRun | undefined;
 
   const figure = new Figure(state, {
     name: "departures",
     height: (width) => (run?.plan.name === "map" ? Math.min(520, 140 + 16 * run.plan.ac_mm_s2.length) : width < 500 ? 420 : 460),
-    stale: () => base !== baseOf(state.verdict.get().link),
+    stale: () => {
+      const link = state.verdict.get().link ?? "";
+      return base !== baseOf(link) && (!opened || flightOf(link) !== flightOf(opened.link));
+    },
     overlay: (context, panels) => {
       for (const row of [opened, marked])
         for (const panel of panels) {
@@ -153,24 +163,43 @@ export function mountDepartures({ state, client, studies }: Page): void {
         return drawn?.panels;
       },
     });
-    const scroll = beside.querySelector(".frame")?.scrollTop ?? 0;
-    beside.replaceChildren(listed(rows, mine.plan.ac_mm_s2, openRow));
-    const frame = beside.querySelector(".frame");
-    if (frame) frame.scrollTop = scroll;
+    list(mine);
   }
+
+  /** The table lists one acceleration at a time; while rows pour in it is renewed a few times a second. */
+  const list = (mine: StudyRun) => {
+    if (listing !== undefined) return;
+    listing = setTimeout(
+      () => {
+        listing = undefined;
+        if (run !== mine) return;
+        const accelerations = mine.plan.ac_mm_s2;
+        if (chosen.options.length !== accelerations.length || begun !== mine) {
+          chosen.replaceChildren(...accelerations.map((ac, i) => h("option", { value: i }, significant(ac, 3))));
+          begun = mine;
+        }
+        choice.hidden = accelerations.length < 2;
+        const scroll = framed.querySelector(".frame")?.scrollTop ?? 0;
+        framed.replaceChildren(listed(rows.filter((row) => row.ac === Number(chosen.value)), openRow));
+        const frame = framed.querySelector(".frame");
+        if (frame) frame.scrollTop = scroll;
+      },
+      mine.progress.get().is === "running" ? LISTED_MS : 0,
+    );
+  };
 
   function openRow(row: Told): void {
     opened = row;
     verdict.hidden = false;
     verdict.textContent = `Opening the flight of ${row.depart}…`;
     figure.redrawOverlay();
-    state.open(client.check(row.link));
+    state.load(client.check(row.link), ["departures"]);
     compare(state.shown.get());
   }
 
   /** Once the opened flight is there: is it the row's? */
   function compare(shown: Shown | null): void {
-    if (!opened || shown?.link !== opened.link) return;
+    if (!opened || !shown || flightOf(shown.link) !== flightOf(opened.link)) return;
     const { time_d } = shown.solved.report.flight;
     const differs = opened.time_d === null || time_d === null ? Number(opened.time_d !== time_d) : Math.abs(time_d / opened.time_d - 1);
     verdict.className = differs <= AGREES ? "note" : "alarm";
@@ -181,7 +210,8 @@ export function mountDepartures({ state, client, studies }: Page): void {
   }
   state.shown.watch(compare);
   const asked = h("div", { class: "study-fields" }, ...fields);
-  const without = h(
+  const buttons = h("div", { class: "tools" }, dates, map);
+  const dateless = h(
     "p",
     { class: "note" },
     "Circles have no dates. ",
@@ -189,48 +219,61 @@ export function mountDepartures({ state, client, studies }: Page): void {
   );
   state.scenario.watch(({ texts }) => {
     const spatial = texts.geometry === "spatial";
-    without.hidden = spatial;
+    dateless.hidden = spatial;
     asked.hidden = buttons.hidden = !spatial;
   });
-  state.verdict.watch(({ link }) => (dates.disabled = map.disabled = link === null));
-  part("departures").append(h("h2", { id: "departures-title" }, "Departures"), h("p", {}, "When should it leave?"), without, asked);
-  const buttons = h("div", { class: "tools" }, dates, map);
-  part("departures").append(buttons, working, said, spoken, verdict, h("div", { class: "study" }, figure.frame, beside));
+  state.verdict.watch(({ link }) => {
+    dates.disabled = map.disabled = link === null;
+    figure.redraw();
+  });
+  part("departures").append(
+    h("h2", { id: "departures-title" }, "Departures"),
+    h("p", {}, "When should it leave?"),
+    dateless,
+    asked,
+    buttons,
+    working,
+    said,
+    spoken,
+    verdict,
+    h("div", { class: "study" }, figure.frame, beside),
+  );
 }
 
-/** The scenario without what a study sets itself. */
-function baseOf(link: string | null): string {
-  if (link === null) return "";
-  const keys = new URLSearchParams(link);
-  for (const key of ["depart", "title", "span", "step_d", "ac_range"]) keys.delete(key);
+/** A link without some of its keys. */
+function without(link: string | null, dropped: readonly string[]): string {
+  const keys = new URLSearchParams(link ?? "");
+  for (const key of dropped) keys.delete(key);
   return String(keys);
 }
+
+/** The scenario that a study varies, and the flight that a link means whatever study it carries. */
+const STUDY_KEYS = ["span", "step_d", "ac_range"];
+const baseOf = (link: string | null) => without(link, ["depart", "title", ...STUDY_KEYS]);
+const flightOf = (link: string) => without(link, STUDY_KEYS);
 
 function wordsOf(row: Told): string {
   const accel = valueOf(row.link, "ac_mm_s2");
   return `${row.depart}: ${row.time_d === null ? "no flight found" : `${fixed(row.time_d, 2)} d, arriving ${row.arrive?.slice(0, 10) ?? NONE}`}${accel ? ` at ${accel} mm/s²` : ""}`;
 }
 
-function listed(rows: readonly Told[], ac_mm_s2: readonly number[], open: (row: Told) => void): HTMLElement {
-  const many = ac_mm_s2.length > 1;
+function listed(rows: readonly Told[], open: (row: Told) => void): HTMLElement {
   const marks = (row: Told) =>
     [row.time_d === null && row.status.replace("_", " "), row.best && "best", row.earliest && "earliest", row.breaks_law && "× arrives before an earlier departure"]
       .filter(Boolean)
       .join(", ");
   return table(
     "Departures",
-    ["departure", ...(many ? ["mm/s²"] : []), "flight, d", "arrival", "turns", "", "open"],
+    ["departure: open", "flight, d", "arrival", "turns", "remarks"],
     rows.map((row) =>
       h(
         "tr",
         { class: row.best ? "best" : "" },
-        h("th", { scope: "row" }, row.depart),
-        many && h("td", {}, significant(ac_mm_s2[row.ac], 3)),
+        h("th", { scope: "row" }, h("button", { type: "button", class: "plain", "aria-label": `Open the flight of ${row.depart}`, onclick: () => open(row) }, row.depart)),
         h("td", {}, fixed(row.time_d, 2)),
         h("td", {}, row.arrive?.slice(0, 10) ?? NONE),
         h("td", {}, fixed(row.revolutions, 2)),
         h("td", { class: row.breaks_law || row.time_d === null ? "words bad" : "words" }, marks(row)),
-        h("td", {}, h("button", { type: "button", "aria-label": `Open the flight of ${row.depart}`, onclick: () => open(row) }, "Open")),
       ),
     ),
     "departures",

@@ -16,7 +16,7 @@ use super::extremal::{Augmented, Extremal};
 use super::flight::{Flown, fly_from};
 use super::shooting::{MAX_STEPS, Unknowns, tangents, trusted};
 use super::solve::{self, solve as without_excess};
-use crate::excess::{Allowance, MOMENT, launch, left_over};
+use crate::excess::{Allowance, MOMENT, launch, left_over, pieces};
 
 /// Two circles, a sail, and the excess speeds allowed. Canonical units (au).
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -210,20 +210,23 @@ fn near(now: &Unknowns, next: &Unknowns) -> bool {
 }
 
 /// Follows a flight from the allowance `from` to `to`; the sign of the Hamiltonian is not looked at.
-fn grown(at: &Shooting, start: Unknowns, [from, to]: [Allowance; 2], goal: f64) -> Option<Unknowns> {
-    let leg = Shooting { from, to, ..*at };
+fn grown(at: &Shooting, start: Unknowns, way: [Allowance; 2], goal: f64) -> Option<Unknowns> {
+    pieces(way).try_fold(start, |start, [from, to]| grown_piece(&Shooting { from, to, ..*at }, start, goal))
+}
+
+fn grown_piece(leg: &Shooting, start: Unknowns, goal: f64) -> Option<Unknowns> {
     let along = |start: (Unknowns, f64), stride: &Stride| {
         let towards = arclength::Goal { parameter: 1.0, sign: 1.0 };
-        let followed = arclength::follow(&leg, start, &towards, stride, &mut |_| true);
+        let followed = arclength::follow(leg, start, &towards, stride, &mut |_| true);
         (followed.ended == Ended::Reached).then_some(followed.point.0)
     };
-    let landed = |point: Unknowns| refine(&leg, point, goal, 12).filter(|x| x.converged).map(|x| x.point);
+    let landed = |point: Unknowns| refine(leg, point, goal, 12).filter(|x| x.converged).map(|x| x.point);
     let quick = along((start, 0.0), &STRIDE).and_then(landed);
     if quick.is_some() {
         return quick;
     }
     let solve = |share: f64, guess: Unknowns| {
-        let solved = refine(&Shooting { share, ..leg }, guess, goal, 8)?;
+        let solved = refine(&Shooting { share, ..*leg }, guess, goal, 8)?;
         (solved.converged && near(&guess, &solved.point)).then_some((solved.point, solved.passes))
     };
     let stuck = match follow(start, &PACE, solve, Unknowns::extrapolated) {
@@ -231,7 +234,7 @@ fn grown(at: &Shooting, start: Unknowns, [from, to]: [Allowance; 2], goal: f64) 
         Err(stuck) => stuck,
     };
     // Where only a part will be used from here on, the rest of the way is one step.
-    let leap = refine(&leg, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
+    let leap = refine(leg, stuck.point, goal, 12).filter(|x| x.converged && near(&stuck.point, &x.point));
     leap.map(|x| x.point)
         .or_else(|| along((stuck.point, stuck.parameter), &CAREFUL).and_then(landed))
         .or_else(|| along((start, 0.0), &Stride { wanted_correction: 2e-3, ..CAREFUL }).and_then(landed))

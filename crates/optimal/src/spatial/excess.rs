@@ -15,7 +15,7 @@ use super::polish::{Conditions, Exactness, Flight, Kind};
 use super::prove::{Flown, prove_granted};
 use super::rendezvous::same;
 use crate::certificate::Verdict;
-use crate::excess::Allowance;
+use crate::excess::{Allowance, pieces};
 
 /// Tolerance of integrations and residual to reach on the way.
 const CARRY: (f64, f64) = (1e-9, 1e-7);
@@ -90,8 +90,10 @@ where
     const NONE: Allowance = Allowance::NONE;
     let both = *allowance;
     let at = Granting::<N> { kind, conditions, from: both, to: both, share: 1.0, tolerance: CARRY.0 };
-    let leg =
-        |start: Flight, from: Allowance, to: Allowance| grown::<N, M>(&Granting { from, to, ..at }, start);
+    let leg = |start: Flight, from: Allowance, to: Allowance| {
+        pieces([from, to])
+            .try_fold(start, |at_from, [from, to]| grown::<N, M>(&Granting { from, to, ..at }, at_from))
+    };
     let minimum = |x: &Flown| x.evidence.verdict() == Verdict::Converged;
     let in_turn = |first: Allowance| {
         if first == NONE || first == both {

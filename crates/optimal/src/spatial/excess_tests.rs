@@ -83,15 +83,13 @@ fn more_allowance_is_never_slower_on_either_branch() {
 #[test]
 fn a_huge_allowance_stops_mattering() {
     meetings((Planet::Mars, 0.5), DATE + 130.0, |conditions, plain| {
-        let [enough, huge] = [speeds(8.0, 0.0), speeds(20.0, 0.0)]
+        let [enough, huge] = [speeds(5.0, 0.0), speeds(20.0, 0.0)]
             .map(|allowance| granted(Kind::Meeting, conditions, &allowance, plain.clone()));
         check_proven(&huge);
-        let inside: Vec<_> = enough.iter().filter(|x| units::km_per_s(x.excess.departure) < 7.9).collect();
-        assert!(!inside.is_empty());
-        for (few, many) in inside.iter().zip(&huge) {
-            assert!((many.flight.time / few.flight.time - 1.0).abs() < 1e-8);
-            assert!((many.excess.departure / few.excess.departure - 1.0).abs() < 1e-5);
-        }
+        let (few, many) = (&enough[0], &huge[0]);
+        assert!(units::km_per_s(few.excess.departure) < 4.9, "{:?}", few.excess);
+        assert!((many.flight.time / few.flight.time - 1.0).abs() < 1e-8);
+        assert!((many.excess.departure / few.excess.departure - 1.0).abs() < 1e-6);
     });
 }
 
@@ -179,17 +177,5 @@ fn the_best_departure_point_is_no_slower_than_its_neighbours() {
         let slower = beside.flight.time / best.flight.time - 1.0;
         // Second order in the shift of 3 days: were it first order, it would be some 1e-2, and negative on one side.
         assert!(slower > 0.0 && slower < 1e-3, "{slower:e}");
-    }
-}
-
-#[test]
-fn pick() {
-    for k in 0..12 {
-        meetings((Planet::Mars, 0.5), DATE + 65.0 * k as f64, |conditions, plain| {
-            for w in [5.0, 8.0] {
-                let f = granted(Kind::Meeting, conditions, &speeds(w, 0.0), plain.clone());
-                println!("{k} {w} {:?}", f.iter().map(|x| (units::days(x.flight.time), units::km_per_s(x.excess.departure))).collect::<Vec<_>>());
-            }
-        });
     }
 }

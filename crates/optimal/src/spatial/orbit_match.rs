@@ -23,14 +23,29 @@ fn flight(point: &Point, departure: f64) -> Flight {
     Flight { costate: point.costate, departure, time: point.time, arrival: point.arrival }
 }
 
-/// Most Jacobians along one direction of one curve.
-const BUDGET: usize = 500;
+/// How far to march round the start orbit.
+#[derive(Clone, Copy, Debug)]
+struct Walk {
+    /// Most Jacobians along one direction.
+    budget: usize,
+    /// Most turns of the start orbit along one direction.
+    turns: f64,
+    /// Whether to go only where flights become faster, and to stop at the first stationary point.
+    downhill: bool,
+}
 
-/// Departure points tried, evenly spread in time, where marching from the first meets no stationary one.
+/// Once round, both ways: meets every stationary point of nearly round orbits.
+const ROUND: Walk = Walk { budget: 500, turns: 1.05, downhill: false };
+
+/// Steep and eccentric targets have curves that wind: from turn to turn the flight differs, and the minimum may be some
+/// turns away.
+const DOWN: Walk = Walk { budget: 1500, turns: 6.0, downhill: true };
+
+/// Departure points tried, evenly spread in time, where marching once round from the first meets no stationary one.
 const PLACES: u32 = 8;
 
 /// Of those, how many of the fastest to march from.
-const FASTEST: usize = 4;
+const FASTEST: usize = 3;
 
 /// Flights with both ends free, fastest first.
 ///
@@ -39,7 +54,7 @@ const FASTEST: usize = 4;
 pub fn free_ends(setting: &Setting, conditions: &Conditions<'_>) -> Vec<Flown> {
     let mut found = Collected::new(conditions);
     if let Some(open) = launched(setting, 0.0, &Care::QUICK) {
-        marched(setting, &open, &Care::QUICK, &mut found);
+        marched(setting, &open, &Care::QUICK, &ROUND, &mut found);
     }
     if found.flights.is_empty() {
         from_fastest(setting, &mut found);
@@ -76,8 +91,8 @@ impl<'a> Collected<'a> {
 }
 
 /// Stationary departure points met while marching round the start orbit from `open`.
-fn marched(setting: &Setting, open: &Point, care: &Care, found: &mut Collected<'_>) {
-    for guess in crossings(setting, open, care, BUDGET) {
+fn marched(setting: &Setting, open: &Point, care: &Care, walk: &Walk, found: &mut Collected<'_>) {
+    for guess in crossings(setting, open, care, walk) {
         found.add(guess);
     }
 }
@@ -91,7 +106,7 @@ fn from_fastest(setting: &Setting, found: &mut Collected<'_>) {
     points.sort_by(|a, b| a.time.total_cmp(&b.time));
     for open in points.iter().take(FASTEST) {
         if found.flights.is_empty() {
-            marched(setting, open, &care, found);
+            marched(setting, open, &care, &DOWN, found);
         }
     }
 }
@@ -116,7 +131,7 @@ fn grown_from_round(setting: &Setting, found: &mut Collected<'_>) {
     let (from, to) = (|time| round.ends.departure(1.0, time), |time| round.ends.target(1.0, time));
     let axis = round.ends.to.semi_major_axis;
     let nearly_round = Conditions { from: &from, to: &to, target_axis: axis, ..*found.conditions };
-    let guesses = crossings(&round, &open, &care, 3 * BUDGET).into_iter();
+    let guesses = crossings(&round, &open, &care, &ROUND).into_iter();
     for guess in guesses.filter_map(|guess| polish(Kind::OpenEnds, &nearly_round, guess, care.tolerance)) {
         let point = Point {
             costate: guess.costate,
@@ -148,27 +163,28 @@ fn leaving_gain(setting: &Setting, costate: &Vector6<f64>, departure: f64) -> Op
     Some((0..6).map(|i| costate[i] * coasting_rate(&start)[i]).sum())
 }
 
-/// Guesses of stationary departure points: where the gain changes sign along the curve of orbit matches, followed both
-/// ways until it has gone once round the start orbit.
-fn crossings(setting: &Setting, open: &Point, care: &Care, budget: usize) -> Vec<Flight> {
-    let period = period(setting);
+/// Guesses of stationary departure points: where the gain changes sign along the curve of orbit matches.
+fn crossings(setting: &Setting, open: &Point, care: &Care, walk: &Walk) -> Vec<Flight> {
+    let reach = walk.turns * period(setting);
     let setting = Setting { tolerance: care.tolerance, ..*setting };
     let curve = Leaving(&setting);
     let mut guesses = Vec::new();
-    for sign in [1.0, -1.0] {
-        let mut last = (*open, leaving_gain(&setting, &open.costate, open.parameter));
+    let Some(first_gain) = leaving_gain(&setting, &open.costate, open.parameter) else { return guesses };
+    // Leaving later makes the flight longer by the gain over the Hamiltonian: downhill is against its sign.
+    let ways: &[f64] = if walk.downhill { &[first_gain.signum()] } else { &[1.0, -1.0] };
+    for &sign in ways {
+        let mut last = (*open, first_gain);
         let mut watch = |point: &Point| {
-            let gain = leaving_gain(&setting, &point.costate, point.parameter);
-            if let (Some(before), Some(now)) = (last.1, gain)
-                && before * now < 0.0
-            {
-                guesses.push(between(&last.0, point, before / (before - now)));
+            let Some(gain) = leaving_gain(&setting, &point.costate, point.parameter) else { return false };
+            if last.1 * gain < 0.0 {
+                guesses.push(between(&last.0, point, last.1 / (last.1 - gain)));
             }
             last = (*point, gain);
-            (point.parameter - open.parameter).abs() < period
+            let arrived = walk.downhill && !guesses.is_empty();
+            !arrived && (point.parameter - open.parameter).abs() < reach
         };
         let goal = Goal { parameter: f64::INFINITY * sign, sign };
-        let stride = numerics::arclength::Stride { budget, ..care.stride() };
+        let stride = numerics::arclength::Stride { budget: walk.budget, ..care.stride() };
         let followed = follow(&curve, *open, &goal, &stride, &mut watch);
         // Once round in one direction has seen every departure point: the other would meet them again.
         if followed.ended == Ended::Told {

@@ -103,9 +103,10 @@ pub fn prove_granted(
     Some(Flown { flight: *flight, trajectory, evidence, end: std::array::from_fn(|i| end[i]), excess })
 }
 
-/// What [`prove`] proves, without the path: several times cheaper.
-pub fn evidence(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<Evidence> {
-    reflown(conditions, flight, &Allowance::NONE, tolerance, &mut |_| ()).map(|(_, evidence, _)| evidence)
+/// What [`prove`] proves, and the angle swept, without the path: several times cheaper.
+pub fn evidence(conditions: &Conditions<'_>, flight: &Flight, tolerance: f64) -> Option<(Evidence, f64)> {
+    reflown(conditions, flight, &Allowance::NONE, tolerance, &mut |_| ())
+        .map(|(end, evidence, _)| (evidence, end[12]))
 }
 
 /// Flies `flight`, shows every step, and judges where it ends.

@@ -101,8 +101,10 @@ pub fn merge(known: &mut Found, new: impl IntoIterator<Item = Branch>) {
 pub struct Settled {
     /// The flight, to its last digits.
     pub flight: Flight,
-    /// What re-flying showed.
+    /// What re-flying it showed.
     pub evidence: Evidence,
+    /// Heliocentric angle swept, rad.
+    pub swept: f64,
 }
 
 /// Marched flight times this close (relative) are told apart by polishing both.
@@ -134,7 +136,8 @@ pub fn best(conditions: &Conditions<'_>, found: &[Branch]) -> Option<Settled> {
 fn settled(conditions: &Conditions<'_>, branch: &Branch) -> Option<Settled> {
     let at = |flight: Flight, exactness: Exactness| {
         let flight = polish(Kind::Meeting, conditions, flight, exactness.polish)?;
-        Some(Settled { flight, evidence: evidence(conditions, &flight, exactness.prove)? })
+        let (evidence, swept) = evidence(conditions, &flight, exactness.prove)?;
+        Some(Settled { flight, evidence, swept })
     };
     let usual = at(branch.flight, Exactness::USUAL)?;
     if usual.evidence.verdict() == Verdict::Converged {

@@ -6,7 +6,7 @@ use orbits::planets::Planet;
 use super::{LinkError, text, value};
 use crate::date::Date;
 use crate::keys::{self, KeyInfo};
-use crate::schema::{Ageing, Baseline, CraftInput, Film, OrbitInput, Place, Scenario, Word};
+use crate::schema::{Ageing, Baseline, CraftInput, Film, OrbitInput, Place, Scenario, StudyKeys, Word};
 
 /// The scenario that a bare link stands for.
 ///
@@ -157,6 +157,19 @@ impl Reader {
             assembly_g_m2: self.number("assembly_g_m2"),
             bus_kg: self.number("bus_kg"),
             segments: self.read("segments", value::whole),
+            study: self.study(default.study),
+        }
+    }
+
+    fn study(&mut self, default: StudyKeys) -> StudyKeys {
+        let range = |unit, min, max| {
+            move |info: &'static KeyInfo, text: &str| value::range(info, text, &value::Place { name: unit, min, max })
+        };
+        StudyKeys {
+            span: self.read("span", value::span).unwrap_or(default.span),
+            step_d: self.read("step_d", value::whole).unwrap_or(default.step_d),
+            ac_range: self.read("ac_range", range("each acceleration", 0.01, 20.0)).unwrap_or(default.ac_range),
+            area_range: self.read("area_range", range("each area", 1e-3, 1e9)),
         }
     }
 

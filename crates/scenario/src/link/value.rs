@@ -2,7 +2,9 @@
 //!
 //! Each reader returns the rule that the text breaks, as words that follow "key: value —".
 
+use crate::date::Date;
 use crate::keys::KeyInfo;
+use crate::schema::Range;
 
 /// Longest title, characters.
 pub(super) const TITLE_CHARACTERS: usize = 80;
@@ -85,6 +87,33 @@ pub(super) fn list(info: &KeyInfo, text: &str, places: &[Place], fewest: usize) 
         }
     };
     places.iter().zip(&pieces).map(read).collect()
+}
+
+/// Fewest and most values of a range.
+const COUNTS: Place = Place { name: "the number of values", min: 2.0, max: 200.0 };
+
+/// Closest ends of a range: its values are told apart at six digits.
+const CLOSEST: f64 = 1.01;
+
+/// Reads a range: smallest and largest value, each within `limits`, and how many.
+pub(super) fn range(info: &KeyInfo, text: &str, limits: &Place) -> Result<Range, String> {
+    let end = || Place { name: limits.name, min: limits.min, max: limits.max };
+    let values = list(info, text, &[end(), end(), COUNTS], 3)?;
+    let [first, last, count] = values[..] else { return Err(info.must_be()) };
+    if last < CLOSEST * first {
+        return Err("must have its second value at least 1.01 times the first".to_owned());
+    }
+    if count.fract() != 0.0 {
+        return Err(format!("{} must be a whole number", COUNTS.name));
+    }
+    Ok(Range { first, last, count: count as u32 })
+}
+
+/// Reads two dates, the earlier first.
+pub(super) fn span(info: &KeyInfo, text: &str) -> Result<[Date; 2], String> {
+    let Some((first, last)) = text.split_once(',') else { return Err(info.must_be()) };
+    let (first, last) = (Date::parse(first)?, Date::parse(last)?);
+    if last < first { Err("must have the earlier date first".to_owned()) } else { Ok([first, last]) }
 }
 
 /// Reads free text: 1 to 80 characters, none of which could act as anything but text.

@@ -36,6 +36,7 @@ pub fn evaluate(plan: &Plan, item: &Item) -> Vec<Row> {
         best: sweep::best(&route.conditions, found).map(|settled| Best {
             verdict: settled.evidence.verdict(),
             flight: Seed { date, costate: settled.flight.costate.into(), time: settled.flight.time },
+            swept: settled.swept,
         }),
     });
     rows.collect()

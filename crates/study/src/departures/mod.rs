@@ -79,6 +79,8 @@ pub struct Best {
     pub verdict: Verdict,
     /// The flight.
     pub flight: Seed,
+    /// Heliocentric angle swept, rad.
+    pub swept: f64,
 }
 
 /// Most dates of one item.

@@ -17,7 +17,7 @@ fn plan(to: Planet, first_d: f64, step_d: f64, dates: usize, accelerations: &[f6
 /// A row with this flight time, d; none where it is not finite.
 fn row(date: usize, time_d: f64) -> Row {
     let flight = Seed { date, costate: [0.0; 6], time: units::canonical_time(time_d) };
-    let best = time_d.is_finite().then_some(Best { verdict: Verdict::Converged, flight });
+    let best = time_d.is_finite().then_some(Best { verdict: Verdict::Converged, flight, swept: 0.0 });
     Row { sail: 0, date, branches: 1, best }
 }
 
@@ -50,7 +50,7 @@ fn items_span_at_most_a_quarter_of_the_synodic_period() {
 
 #[test]
 fn the_order_of_items_changes_no_digit() {
-    let plan = plan(Planet::Mars, 250.0, 20.0, 14, &[0.8, 1.2]);
+    let plan = plan(Planet::Mars, 250.0, 40.0, 14, &[0.8, 1.2]);
     let items = plan.items();
     assert!(items.len() >= 6);
     let forwards: Vec<Row> = items.iter().flat_map(|item| evaluate(&plan, item)).collect();
