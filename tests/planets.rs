@@ -197,7 +197,6 @@ fn velocities_miss_by_no_more_than_positions_say() {
             worst = worst.max(miss);
         }
         assert!(worst <= allowed, "{}: {worst:.2} m/s, allowed {allowed:.2}", planet.name());
-        println!("{} {worst:.2} {allowed:.2}", planet.name());
     }
 }
 

@@ -46,7 +46,7 @@ export const GROUPS = [
 
 /** Keys whose value is a list, each part with a field of its own. */
 export const ORBIT_KEYS = ["from_orbit", "to_orbit"] as const;
-export const LIST_KEYS = [...ORBIT_KEYS, "span", "ac_range"] as const;
+export const LIST_KEYS = [...ORBIT_KEYS, "span", "ac_range", "area_range"] as const;
 export type OrbitKey = (typeof ORBIT_KEYS)[number];
 export type ListKey = (typeof LIST_KEYS)[number];
 
@@ -104,6 +104,8 @@ const STEERING = [
 
 const by = (way: CraftBy) => (scenario: Scenario) => scenario.craftBy === way;
 const inSpace = ({ texts }: Scenario) => texts.geometry === "spatial";
+/** In space nothing else is flown. */
+const isFastest = (scenario: Scenario) => inSpace(scenario) || scenario.texts.steer === "fastest";
 const onCircles = (scenario: Scenario) => !inSpace(scenario);
 
 /** One field for each element: a circle needs but its radius, and only a dated flight asks where the body is. */
@@ -122,17 +124,28 @@ function elements(key: OrbitKey, end: "from" | "to"): Control[] {
   }));
 }
 
-/** The study of departure dates: its span, its step, and the accelerations of the map. */
+/** The study of departure dates: its span, its step, and the sails of the map. */
 function departures(): Control[] {
-  const date = { group: "departures", kind: "date", asked: inSpace, range: "YYYY-MM-DD", help: "" } as const;
-  const range = { group: "departures", unit: "mm/s²", asked: inSpace, help: "" } as const;
+  const piece = (key: ListKey, name: string, rest: Partial<Control>): Control => ({
+    key: pieceKey(key, name),
+    group: "departures",
+    piece: { key, name },
+    asked: inSpace,
+    range: "",
+    help: "",
+    ...rest,
+  });
+  const sails = (key: ListKey, what: string, unit: string) => [
+    piece(key, "first", { label: `Smallest ${what}`, unit }),
+    piece(key, "last", { label: `Largest ${what}`, unit }),
+    piece(key, "count", { label: "How many" }),
+  ];
   return [
-    { ...date, key: "span_first", piece: { key: "span", name: "first" }, label: "First date" },
-    { ...date, key: "span_last", piece: { key: "span", name: "last" }, label: "Last date" },
-    { key: "step_d", group: "departures", asked: inSpace, help: "" },
-    { ...range, key: "ac_range_low", piece: { key: "ac_range", name: "low" }, label: "Least acceleration" },
-    { ...range, key: "ac_range_high", piece: { key: "ac_range", name: "high" }, label: "Largest acceleration" },
-    { ...range, key: "ac_range_count", piece: { key: "ac_range", name: "count" }, label: "Accelerations", unit: "", range: "1 to 100" },
+    piece("span", "first", { label: "First", kind: "date" }),
+    piece("span", "last", { label: "Last", kind: "date" }),
+    { key: "step_d", group: "departures", asked: inSpace, label: "Step", range: "", help: "" },
+    ...sails("ac_range", "acceleration", "mm/s²"),
+    ...sails("area_range", "area", "m²"),
   ];
 }
 
@@ -165,8 +178,8 @@ export const CONTROLS: readonly Control[] = [
     range: "YYYY-MM-DD, 1800 to 2050",
     help: "0 h TDB of that day, about 69 s ahead of UTC. Left out: the best departure point, at no date.",
   },
-  { key: "vinf_km_s", group: "ends" },
-  { key: "vinf_arrive_km_s", group: "ends" },
+  { key: "vinf_km_s", group: "ends", asked: isFastest },
+  { key: "vinf_arrive_km_s", group: "ends", asked: isFastest },
   { key: "deadline_d", group: "ends" },
   { key: "steer", group: "steering", choices: STEERING, asked: onCircles },
   { key: "cone_deg", group: "steering", asked: (scenario) => onCircles(scenario) && scenario.texts.steer === "fixed" },
@@ -183,9 +196,4 @@ export const WITH_FIELD: ReadonlySet<string> = new Set([...CONTROLS.map((control
 
 export function isAsked(control: Control, scenario: Scenario): boolean {
   return scenario.pinned.has(control.key) || (control.asked?.(scenario) ?? true);
-}
-
-/** What an untouched field holds, given the core's defaults. */
-export function untouched(control: Control, defaults: Readonly<Record<string, string>>): string {
-  return control.standing ?? defaults[control.key] ?? "";
 }

@@ -32,7 +32,7 @@ export function row(head: Child, ...cells: Child[]): HTMLTableRowElement {
 }
 
 /** A table in a frame of its own that scrolls sideways where it must. */
-export function table(caption: string, heads: string[], rows: HTMLTableRowElement[], kind = ""): HTMLElement {
+export function table(caption: string, heads: string[], rows: readonly HTMLTableRowElement[], kind = ""): HTMLElement {
   return h(
     "div",
     { class: `frame ${kind}`, tabindex: 0, role: "group", "aria-label": `${caption}, table` },

@@ -69,10 +69,8 @@ async function open(): Promise<void> {
   if (first !== null) take(first, client.askHere(first));
 
   const page: Page = { state, client, studies: new Pool(startWorker, module, STUDY_WORKERS) };
-  for (const mount of [mountMasthead, mountInputs, mountNotice, mountAnswer, mountOrbit, mountCompare, mountHistories, mountProof, mountDepartures, mountChecks])
+  for (const mount of [mountMasthead, mountInputs, mountNotice, mountAnswer, mountOrbit, mountCompare, mountHistories, mountProof, mountDepartures, mountChecks, mountAssumptions, mountFooter])
     mount(page);
-  mountAssumptions();
-  mountFooter(page);
 
   let started = false;
   state.scenario.watch(() => {

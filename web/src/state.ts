@@ -8,7 +8,6 @@ import {
   WITH_FIELD,
   isAsked,
   pieceKey,
-  untouched,
   type Control,
   type CraftBy,
   type ListKey,
@@ -60,29 +59,27 @@ export class State {
   readonly broken = new Cell<BrokenLink | null>(null);
   readonly cursor_d = new Cell(0);
   readonly theme: Cell<Theme>;
+  /** The defaults as the fields hold them. */
+  private readonly untouched: Readonly<Record<string, string>>;
   constructor(
     private readonly defaults: Readonly<Record<string, string>>,
     theme: Theme,
     /** From the core; converts the lightness number. */
     private readonly sunGravity_mm_s2: number,
   ) {
-    this.scenario = new Cell<Scenario>({ texts: defaults, craftBy: "size", pinned: new Set() });
+    this.untouched = fieldTexts(defaults);
+    this.scenario = new Cell<Scenario>({ texts: this.untouched, craftBy: "size", pinned: new Set() });
     this.theme = new Cell(theme);
   }
 
   /** Takes over every key's value from the core, as it does when a link opens; fields of `kept` groups stay. */
   load(checked: Checked, kept: readonly Control["group"][] = []): void {
-    const texts: Record<string, string> = Object.fromEntries(checked.entries);
-    for (const key of LIST_KEYS) {
-      const values = texts[key] ? texts[key].split(",") : [];
-      piecesOf(key).forEach((control, i) => (texts[control.key] = values[i] ?? ""));
-      delete texts[key];
-    }
+    const texts = fieldTexts(Object.fromEntries(checked.entries));
     const before = this.scenario.get().texts;
     for (const { key, group } of CONTROLS) if (kept.includes(group)) texts[key] = before[key] ?? "";
     const craftBy = texts.ac_mm_s2 ? "acceleration" : "size";
     const bare = { texts, craftBy, pinned: new Set<string>() } as const;
-    const isSet = (control: Control) => texts[control.key] && texts[control.key] !== untouched(control, this.defaults);
+    const isSet = (control: Control) => texts[control.key] && texts[control.key] !== this.untouchedText(control);
     const pinned = CONTROLS.filter((control) => !isAsked(control, bare) && isSet(control)).map((control) => control.key);
     this.scenario.set({ texts, craftBy, pinned: new Set(pinned) });
   }
@@ -104,7 +101,7 @@ export class State {
     if (pinned.size === 0) return pinned;
     const bare = { texts, craftBy, pinned: new Set<string>() };
     const stays = (control: Control) =>
-      pinned.has(control.key) && !isAsked(control, bare) && texts[control.key] !== untouched(control, this.defaults) && texts[control.key] !== "";
+      pinned.has(control.key) && !isAsked(control, bare) && texts[control.key] !== this.untouchedText(control) && texts[control.key] !== "";
     return new Set(CONTROLS.filter(stays).map((control) => control.key));
   }
 
@@ -130,13 +127,13 @@ export class State {
     for (const control of CONTROLS) {
       if (!isAsked(control, scenario)) continue;
       const text = texts[control.key] ?? "";
-      if (control.piece || !this.isKnown(control.key)) continue;
+      if (control.piece) continue;
       if (control.key === LIGHTNESS) entries.push(["ac_mm_s2", this.accelerationOf(text)]);
       // An optional field left empty is left out; any other empty field is for the core to refuse.
       else if (text !== "" || this.isNeeded(control.key)) entries.push([control.key, text]);
     }
     for (const key of LIST_KEYS) {
-      const list = this.isKnown(key) ? this.listText(key) : null;
+      const list = this.listText(key);
       if (list !== null) entries.push([key, list]);
     }
     return compose([...entries, ...this.extras()]);
@@ -148,9 +145,9 @@ export class State {
     const controls = piecesOf(key);
     const values = controls.map((control) => (isAsked(control, scenario) ? (scenario.texts[control.key] ?? "") : ""));
     const last = values.findLastIndex((value) => value !== "");
-    // An orbit that is asked for needs its size; other lists may be left out whole.
-    const needed = controls.some((control) => control.standing !== undefined && isAsked(control, scenario));
-    if (last < 0 && !needed) return null;
+    // An orbit that is asked for needs its size, and what has a default cannot be empty; other lists may be left out.
+    const needed = key === "from_orbit" || key === "to_orbit" || !!this.defaults[key];
+    if (last < 0 && !(needed && controls.some((control) => isAsked(control, scenario)))) return null;
     return controls
       .slice(0, Math.max(1, last + 1))
       .map((control, i) => (values[i] || (control.standing ?? "")).replaceAll(",", NO_COMMA))
@@ -192,9 +189,8 @@ export class State {
     return link !== null && this.shown.get()?.link === link;
   }
 
-  /** Whether the core has this key, or the page converts it. */
-  private isKnown(key: string): boolean {
-    return key === LIGHTNESS || key in this.defaults;
+  private untouchedText(control: Control): string {
+    return control.standing || this.untouched[control.key] || "";
   }
 
   private isNeeded(key: string): boolean {
@@ -205,6 +201,17 @@ export class State {
     const value = Number(lightness);
     return lightness.trim() === "" || !Number.isFinite(value) ? lightness : String(value * this.sunGravity_mm_s2);
   }
+}
+
+/** Values by key as the fields hold them: lists in their parts. */
+function fieldTexts(values: Readonly<Record<string, string>>): Record<string, string> {
+  const texts: Record<string, string> = { ...values };
+  for (const key of LIST_KEYS) {
+    const parts = texts[key] ? texts[key].split(",") : [];
+    piecesOf(key).forEach((control, i) => (texts[control.key] = parts[i] ?? ""));
+    delete texts[key];
+  }
+  return texts;
 }
 
 function piecesOf(key: ListKey): Control[] {

@@ -5,13 +5,14 @@ pub(crate) const USAGE: &str = "\
 sunreach: minimum-time solar sail transfers
 
   sunreach solve LINK [--columns] [--pretty] [-o FILE]   one flight: JSON, or words with --pretty
+  sunreach study NAME LINK [--jobs N] [-o FILE]          many flights, JSON: dates, map
   sunreach figure NAME LINK [-o FILE]                    a picture as SVG: orbit, histories
   sunreach checks [--json]                               published values, computed now
   sunreach --version | --help
 
 LINK is a scenario link or its part after '#', such as 'area_m2=9000&mass_kg=80&to=venus'; '' is the default flight.
-Exit status: 0 converged or flown; 1 approximate, not converged, unreachable or a check failed; 2 bad input;
-3 input or output; 4 internal error.
+Exit status: 0 converged or flown; 1 approximate, not converged, unreachable or a check failed (of a study: for
+any row); 2 bad input; 3 input or output; 4 internal error.
 Preliminary study only: not for flight operations, navigation or range safety.
 ";
 
@@ -21,6 +22,7 @@ pub(crate) enum Command {
     Help,
     Version,
     Solve { link: String, columns: bool, pretty: bool, out: Option<String> },
+    Study { name: String, link: String, jobs: Option<usize>, out: Option<String> },
     Figure { name: String, link: String, out: Option<String> },
     Checks { json: bool },
 }
@@ -29,10 +31,12 @@ impl Command {
     /// Reads the arguments; the error says what to write instead.
     pub(crate) fn from_arguments(mut arguments: impl Iterator<Item = String>) -> Result<Command, String> {
         let Some(word) = arguments.next() else { return Ok(Command::Help) };
-        let (mut words, mut options, mut out) = (Vec::new(), Vec::new(), None);
+        let (mut words, mut options, mut out, mut jobs) = (Vec::new(), Vec::new(), None, None);
         while let Some(argument) = arguments.next() {
             if argument == "-o" {
                 out = Some(arguments.next().ok_or("-o needs a file name after it")?);
+            } else if argument == "--jobs" {
+                jobs = Some(arguments.next().as_deref().and_then(jobs_of).ok_or(JOBS_RULE)?);
             } else if argument.starts_with("--") {
                 options.push(argument);
             } else {
@@ -54,6 +58,10 @@ impl Command {
                 let [link] = exactly(words, "solve takes one scenario link, '' for the default flight")?;
                 Command::Solve { link, columns, pretty, out: out.take() }
             }
+            "study" => {
+                let [name, link] = exactly(words, "study takes a name (dates, map) and a scenario link")?;
+                Command::Study { name, link, jobs: jobs.take(), out: out.take() }
+            }
             "figure" => {
                 let [name, link] =
                     exactly(words, "figure takes a name (orbit, histories) and a scenario link")?;
@@ -72,8 +80,17 @@ impl Command {
         if out.is_some() {
             return Err(format!("-o does not go with {word}"));
         }
+        if jobs.is_some() {
+            return Err(format!("--jobs does not go with {word}"));
+        }
         Ok(command)
     }
+}
+
+const JOBS_RULE: &str = "--jobs needs a whole number after it, 1 to 256";
+
+fn jobs_of(text: &str) -> Option<usize> {
+    text.parse().ok().filter(|jobs| (1..=256).contains(jobs))
 }
 
 fn exactly<const N: usize>(words: Vec<String>, rule: &str) -> Result<[String; N], String> {
@@ -106,6 +123,10 @@ mod tests {
             (vec!["solve", "", "--columns", "--pretty"], "exclude"),
             (vec!["figure", "orbit"], "a name"),
             (vec!["checks", "-o", "x"], "-o"),
+            (vec!["study", "dates"], "a name"),
+            (vec!["study", "dates", "", "--jobs"], "whole number"),
+            (vec!["study", "dates", "", "--jobs", "0"], "1 to 256"),
+            (vec!["solve", "", "--jobs", "2"], "--jobs does not go"),
         ] {
             let message = read(&line).expect_err("wrong on purpose");
             assert!(message.contains(part), "{line:?}: {message}");

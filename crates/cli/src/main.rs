@@ -4,6 +4,7 @@
 //! refused combinations included; 3 input or output; 4 internal error. Messages go to standard error, a line each.
 
 mod arguments;
+mod jobs;
 mod output;
 mod pretty;
 
@@ -13,6 +14,7 @@ use scenario::checks::published_checks;
 use scenario::link::{LinkError, decode};
 use scenario::report::Status;
 use scenario::run::{Answer, run};
+use scenario::study::{LawMark, Study, StudyRow};
 
 use arguments::{Command, USAGE};
 
@@ -45,6 +47,16 @@ fn dispatch() -> u8 {
             }
             Err(code) => code,
         },
+        Command::Study { name, link, jobs, out } => {
+            let study = match decode(&link).and_then(|scenario| Study::open(&name, &scenario)) {
+                Ok(study) => study,
+                Err(errors) => return refuse_all(&errors),
+            };
+            let cores = || std::thread::available_parallelism().map_or(1, usize::from);
+            let report = study.report(&jobs::evaluated(&study, jobs.unwrap_or_else(cores)));
+            let code = report.rows.iter().map(row_code).max().unwrap_or(MISSED);
+            worst(told(output::line(&report), out.as_deref()), code)
+        }
         Command::Figure { name, link, out } => match answer(&link) {
             Ok(answer) => {
                 let drawn = output::figure(&name, &answer);
@@ -67,12 +79,19 @@ fn dispatch() -> u8 {
 }
 
 fn answer(link: &str) -> Result<Answer, u8> {
-    decode(link).and_then(|scenario| run(&scenario)).map_err(|errors: Vec<LinkError>| {
-        for error in &errors {
-            eprintln!("sunreach: {error}");
-        }
-        BAD_INPUT
-    })
+    decode(link).and_then(|scenario| run(&scenario)).map_err(|errors| refuse_all(&errors))
+}
+
+fn refuse_all(errors: &[LinkError]) -> u8 {
+    for error in errors {
+        eprintln!("sunreach: {error}");
+    }
+    BAD_INPUT
+}
+
+/// A study's row that breaks the law of arrivals is no answer, however well its flight is proven.
+fn row_code(row: &StudyRow) -> u8 {
+    if row.law == LawMark::Broken { MISSED } else { flight_code(row.status) }
 }
 
 fn flight_code(status: Status) -> u8 {

@@ -24,7 +24,8 @@ pub(crate) fn rows(rows: &[CheckRow]) -> Result<String, String> {
     line(&rows)
 }
 
-fn line(value: &impl Serialize) -> Result<String, String> {
+/// A value as one line of JSON.
+pub(crate) fn line(value: &impl Serialize) -> Result<String, String> {
     serde_json::to_string(value).map(|text| text + "\n").map_err(|error| format!("internal error: {error}"))
 }
 

@@ -376,3 +376,41 @@ fn a_reader_that_goes_away_ends_with_3_and_no_panic() {
     assert!(message.starts_with("sunreach: cannot write to standard output"), "{message}");
     assert!(!message.contains("panic"), "{message}");
 }
+
+/// Fields of a study report's rows, by name.
+const STUDY_ROW: &[&str] = &[
+    "ac_mm_s2",
+    "area_m2",
+    "arrive",
+    "branches",
+    "depart",
+    "law",
+    "link",
+    "revolutions",
+    "status",
+    "time_d",
+];
+
+#[test]
+fn a_study_says_the_same_for_any_number_of_jobs() {
+    let link = "geometry=spatial&arrive=rendezvous&ac_range=0.8,1.2,2&span=2031-01-01,2032-06-01&step_d=60";
+    let alone = answered(&["study", "map", link, "--jobs", "1"]);
+    assert_eq!(alone, answered(&["study", "map", link, "--jobs", "3"]));
+    let report = json(&alone);
+    assert_eq!(names(&report), ["axes", "best", "link", "notes", "program", "rows", "study"]);
+    assert_eq!(report["study"], "map");
+    let rows = report["rows"].as_array().expect("rows");
+    assert_eq!(rows.len(), 2 * 9);
+    assert_eq!(names(&rows[0]), STUDY_ROW);
+    // A row's link opens that very flight.
+    let flight = json(&answered(&["solve", rows[5]["link"].as_str().expect("a link")]));
+    let (told, opened) = (rows[5]["time_d"].as_f64(), flight["flight"]["time_d"].as_f64());
+    assert!((told.expect("d") / opened.expect("d") - 1.0).abs() < 1e-8);
+}
+
+#[test]
+fn studies_that_are_refused_name_the_key() {
+    check_refused(&["study", "dates", "to=venus"], 2, &["geometry", "arrive"]);
+    check_refused(&["study", "days", ""], 2, &["study: days"]);
+    check_refused(&["study", "dates", "span=2031-05-17"], 2, &["span"]);
+}

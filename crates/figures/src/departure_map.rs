@@ -1,64 +1,30 @@
-//! Flight time over departure date and characteristic acceleration, as a map of cells.
+//! Flight time over departure date and the sail, by its acceleration or its area, as a map of cells.
 
-use serde::{Deserialize, Serialize};
+use std::collections::HashSet;
 
-use crate::axis::{number, significant};
-use crate::departures::{Calendar, FOOT, NAME_SIZE, TICK_SIZE, cross, first_day, words};
+use scenario::study::{Axis, AxisValue, Kind, LawMark, StudyReport, StudyRow};
+
+use crate::axis::{extent, number, significant};
+use crate::departures::{Calendar, Dates, FOOT, NAME_SIZE, TICK_SIZE, cross, sentences, words};
 use crate::geometry::Rect;
 use crate::metrics::{text_height, text_width};
 use crate::notes;
 use crate::shapes::{Anchor, Point, Shape, Stroke, Weight, printable};
 use crate::theme::{Color, Theme};
-use crate::{Figure, FigureError, FigureMap, FigureOptions, Panel, check_options};
+use crate::{Figure, FigureError, FigureMap, FigureOptions, Panel};
 
 /// Height of the colour scale above the map, CSS pixels.
 const HEAD: f64 = 46.0;
 /// Share of the sail's colour in the longest flight; the shortest has all of it.
 const PALEST: f64 = 0.10;
 
-/// A study over departure dates and accelerations as far as it has come.
-#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
-pub struct DepartureMap {
-    /// First departure date, ISO 8601, TDB.
-    pub start: String,
-    /// Days from one departure date to the next.
-    pub step_d: f64,
-    /// How many departure dates there are.
-    pub dates: usize,
-    /// Characteristic accelerations, mm/s^2, ascending.
-    pub ac_mm_s2: Vec<f64>,
-    /// What the flight starts from and goes to, for people.
-    pub ends: String,
-    /// The cells that are there.
-    pub cells: Vec<MapCell>,
-}
-
-/// One departure date at one acceleration.
-#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
-pub struct MapCell {
-    /// Number of the departure date, from 0.
-    pub date: usize,
-    /// Number of the acceleration, from 0.
-    pub ac: usize,
-    /// Flight time, d; null where no flight was found.
-    pub time_d: Option<f64>,
-    /// Whether it arrives earlier than a flight of the same acceleration that leaves before.
-    pub breaks_law: bool,
-    /// Whether the flight time is a local minimum along the dates.
-    pub best: bool,
-}
-
 /// Lays out the map.
 ///
-/// # Units
-/// CSS pixels, y down. The panel: x in days since the first departure date, half a step beyond the first and the
-/// last; y counts accelerations from 0, half of one beyond both ends.
-///
 /// # Errors
-/// A size outside its range, or a start that is no date.
-pub fn departure_map(study: &DepartureMap, options: &FigureOptions) -> Result<Figure, FigureError> {
-    check_options(options)?;
-    let first_d = first_day(&study.start)?;
+/// A study that is no map over dates.
+pub(crate) fn draw(study: &StudyReport, options: &FigureOptions) -> Result<Figure, FigureError> {
+    let dates = Dates::of(study)?;
+    let sails = study.axes.get(1).ok_or_else(|| FigureError::UnknownName(study.study.clone()))?;
     let theme = Theme::named(options.theme);
     let theme = if options.stale { theme.greyed() } else { *theme };
     let whole = Rect { left: 0.0, top: 0.0, width: options.width, height: options.height };
@@ -66,7 +32,8 @@ pub fn departure_map(study: &DepartureMap, options: &FigureOptions) -> Result<Fi
     let used = notes::set(&mut shapes, &sentences(study, options.stale), whole.grown(-10.0), &theme);
     let top = if used > 0.0 { used + 12.0 } else { 4.0 };
 
-    let labels: Vec<String> = study.ac_mm_s2.iter().map(|&ac| significant(ac, 3)).collect();
+    let values: Vec<f64> = sails.values.iter().map(value).collect();
+    let labels: Vec<String> = values.iter().map(|&value| significant(value, 3)).collect();
     let widest = labels.iter().map(|label| text_width(label, TICK_SIZE, Weight::Normal)).fold(24.0, f64::max);
     let left = (widest + 14.0).min(whole.width / 3.0);
     let frame = Rect {
@@ -75,36 +42,49 @@ pub fn departure_map(study: &DepartureMap, options: &FigureOptions) -> Result<Fi
         width: (whole.width - left - 16.0).max(8.0),
         height: (whole.height - top - HEAD - FOOT).max(8.0),
     };
-    let half_d = study.step_d.max(1e-6) / 2.0;
-    let range_d = [-half_d, half_d + study.step_d * (study.dates.max(1) - 1) as f64];
-    let dates = Calendar::new(first_d, range_d, left, frame.width, whole.width);
-    let count = study.ac_mm_s2.len().max(1) as f64;
-    let y = |ac: f64| frame.bottom() - frame.height * (ac + 0.5) / count;
-    let cell = |cell: &MapCell| {
-        let depart_d = cell.date as f64 * study.step_d;
-        let (x0, x1) = (dates.x(depart_d - half_d), dates.x(depart_d + half_d));
-        let (y0, y1) = (y(cell.ac as f64 + 0.5), y(cell.ac as f64 - 0.5));
-        Rect { left: x0, top: y0, width: x1 - x0, height: y1 - y0 }
+    let half_d = dates.step_d() / 2.0;
+    let range_d = [-half_d, half_d + dates.offsets_d.last().copied().unwrap_or(0.0)];
+    let calendar = Calendar::new(dates.first_d, range_d, left, frame.width, whole.width);
+    let count = labels.len().max(1) as f64;
+    let y = |sail: f64| frame.bottom() - frame.height * (sail + 0.5) / count;
+    let cell = |row: &StudyRow| -> Option<Rect> {
+        let depart_d = dates.offset_d(&row.depart)?;
+        let of_row = held(row, sails)?;
+        let sail = values.iter().position(|&value| value == of_row)? as f64;
+        let (x0, x1) = (calendar.x(depart_d - half_d), calendar.x(depart_d + half_d));
+        let (y0, y1) = (y(sail + 0.5), y(sail - 0.5));
+        Some(Rect { left: x0, top: y0, width: x1 - x0, height: y1 - y0 })
     };
 
     let range = time_range(study);
     shapes.push(Shape::Polygon { points: frame.corners(), color: theme.hairline.towards(theme.sheet, 0.5) });
-    for known in &study.cells {
-        let area = cell(known);
-        let color = match (known.time_d, range) {
+    let shortest: HashSet<(&str, u64)> = study
+        .best
+        .iter()
+        .filter(|pick| pick.kind == Kind::Shortest && !pick.at_edge)
+        .map(|pick| (pick.depart.as_str(), pick.ac_mm_s2.to_bits()))
+        .collect();
+    for row in &study.rows {
+        let Some(area) = cell(row) else { continue };
+        let color = match (row.time_d, range) {
             (Some(time_d), Some(range)) => shade(time_d, range, &theme),
             _ => theme.sheet,
         };
         shapes.push(Shape::Polygon { points: area.corners(), color });
-        if known.time_d.is_none() || known.breaks_law {
-            let half_px = (area.width.min(area.height) / 2.0 - 1.0).clamp(1.0, 4.0);
-            shapes.extend(cross(area.centre(), half_px, Stroke::solid(theme.alarm, 1.4)));
-        } else if known.best {
-            let radius = (area.width.min(area.height) / 4.0).clamp(1.0, 2.5);
+        let least = area.width.min(area.height);
+        let alarm = Stroke::solid(theme.alarm, 1.4);
+        if row.time_d.is_none() {
+            let (at, half) = (area.centre(), (least / 2.0 - 1.0).clamp(1.0, 4.0));
+            let points = vec![Point::new(at.x, at.y - half), Point::new(at.x, at.y + half)];
+            shapes.push(Shape::Polyline { points, stroke: alarm });
+        } else if row.law == LawMark::Broken {
+            shapes.extend(cross(area.centre(), (least / 2.0 - 1.0).clamp(1.0, 4.0), alarm));
+        } else if shortest.contains(&(row.depart.as_str(), row.ac_mm_s2.to_bits())) {
+            let radius = (least / 4.0).clamp(1.0, 2.5);
             shapes.push(Shape::Disc { centre: area.centre(), radius, color: theme.ink });
         }
     }
-    // Every so many accelerations have a label, so that they keep apart.
+    // Every so many sails have a label, so that they keep apart.
     let every = (text_height(TICK_SIZE) + 3.0) / (frame.height / count);
     let every = (every.ceil() as usize).max(1);
     for (k, label) in labels.iter().enumerate().filter(|(k, _)| k % every == 0) {
@@ -112,13 +92,14 @@ pub fn departure_map(study: &DepartureMap, options: &FigureOptions) -> Result<Fi
         shapes.push(words(label, at, Anchor::End, TICK_SIZE, theme.muted));
     }
     let at = Point::new(left, frame.top - 10.0);
-    shapes.push(words("Characteristic acceleration (mm/s²)", at, Anchor::Start, NAME_SIZE, theme.ink));
+    let name = format!("{} ({})", sails.label, sails.unit);
+    shapes.push(words(&name, at, Anchor::Start, NAME_SIZE, theme.ink));
     scale(&mut shapes, Rect { left, top: top + 4.0, width: frame.width, height: 12.0 }, range, &theme);
-    dates.label(&mut shapes, frame.bottom(), &theme);
+    calendar.label(&mut shapes, frame.bottom(), &theme);
 
     let Rect { left, top, width, height } = frame;
     let panel = Panel {
-        column: "ac".to_owned(),
+        column: sails.field.clone(),
         unit: String::new(),
         left,
         top,
@@ -136,51 +117,48 @@ pub fn departure_map(study: &DepartureMap, options: &FigureOptions) -> Result<Fi
     Ok(Figure {
         width: options.width,
         height: options.height,
-        title: printable(&format!("Departure map: {}", study.ends)),
-        description: describe(study),
+        title: "Departure map".to_owned(),
+        description: describe(study, &dates, sails),
         shapes,
         map: FigureMap { panels: vec![panel] },
     })
 }
 
+fn value(value: &AxisValue) -> f64 {
+    match value {
+        AxisValue::Number(number) => *number,
+        AxisValue::Text(_) => f64::NAN,
+    }
+}
+
+/// What a row holds of an axis of sails.
+fn held(row: &StudyRow, axis: &Axis) -> Option<f64> {
+    if axis.field == "area_m2" { row.area_m2 } else { Some(row.ac_mm_s2) }
+}
+
 /// What a reader of the map would see, in words.
-fn describe(study: &DepartureMap) -> String {
+fn describe(study: &StudyReport, dates: &Dates, sails: &Axis) -> String {
     let mut text = format!(
-        "Flight time over {} departure dates from {} and {} characteristic accelerations; {} cells, {} with a flight.",
-        study.dates,
-        study.start,
-        study.ac_mm_s2.len(),
-        study.cells.len(),
-        study.cells.iter().filter(|cell| cell.time_d.is_some()).count()
+        "Flight time over {} departure dates and {} values of {}; {} flights so far.",
+        dates.offsets_d.len(),
+        sails.values.len(),
+        sails.label.to_lowercase(),
+        study.rows.len()
     );
     if let Some([low, high]) = time_range(study) {
         text += &format!(" From {} to {} days.", number(low, 1), number(high, 1));
     }
-    let broken = study.cells.iter().filter(|cell| cell.breaks_law).count();
+    let broken = study.rows.iter().filter(|row| row.law == LawMark::Broken).count();
     if broken > 0 {
-        text += &format!(" {broken} arrive earlier than a flight that leaves before.");
+        text += &format!(" {broken} arrive after a flight that leaves later.");
     }
     printable(&text)
 }
 
-fn sentences(study: &DepartureMap, stale: bool) -> Vec<String> {
-    let mut out = Vec::new();
-    if stale {
-        out.push("Out of date: the inputs have changed.".to_owned());
-    }
-    if study.cells.iter().any(|cell| cell.breaks_law || cell.time_d.is_none()) {
-        out.push(
-            "\u{d7} no flight found, or one that arrives earlier than a flight that leaves before."
-                .to_owned(),
-        );
-    }
-    out
-}
-
 /// Shortest and longest flight, d.
-fn time_range(study: &DepartureMap) -> Option<[f64; 2]> {
-    let times: Vec<f64> = study.cells.iter().filter_map(|cell| cell.time_d).collect();
-    crate::axis::extent(&times).map(|(low, high)| [low, high])
+fn time_range(study: &StudyReport) -> Option<[f64; 2]> {
+    let times: Vec<f64> = study.rows.iter().filter_map(|row| row.time_d).collect();
+    extent(&times).map(|(low, high)| [low, high])
 }
 
 /// The shorter the flight, the fuller the colour; equal steps are equal ratios of time.

@@ -2,7 +2,9 @@
 //!
 //! Rows are drawn as they come: a study that still runs is a study with fewer rows.
 
-use serde::{Deserialize, Serialize};
+use std::collections::HashMap;
+
+use scenario::study::{AxisValue, Kind, LawMark, StudyReport, StudyRow};
 
 use crate::axis::{Steps, Tick, extent, linear_ticks, number, padded};
 use crate::calendar::{date_ticks, start_d};
@@ -12,7 +14,7 @@ use crate::metrics::{text_height, text_width};
 use crate::notes;
 use crate::shapes::{Anchor, Point, Shape, Stroke, Text, Weight, printable};
 use crate::theme::{Color, Theme};
-use crate::{Figure, FigureError, FigureMap, FigureOptions, Panel, check_options};
+use crate::{Figure, FigureError, FigureMap, FigureOptions, Panel};
 
 /// Font size of tick labels, CSS pixels.
 pub(crate) const TICK_SIZE: f64 = 11.0;
@@ -25,64 +27,83 @@ pub(crate) const FOOT: f64 = 40.0;
 /// Most departures that are named in the figure.
 const MOST_NAMED: usize = 6;
 
-/// A study of departure dates as far as it has come.
-#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
-pub struct Departures {
-    /// First departure date, ISO 8601, TDB.
-    pub start: String,
-    /// Days from the first to the last departure date.
-    pub span_d: f64,
-    /// Days from one departure date to the next.
-    pub step_d: f64,
-    /// What the flight starts from and goes to, for people.
-    pub ends: String,
-    /// The rows that are there, in order of dates.
-    pub rows: Vec<Departure>,
+/// The rows of one sail on a calendar, as drawn.
+struct Row<'a> {
+    row: &'a StudyRow,
+    /// Days since the first departure date.
+    depart_d: f64,
+    kinds: Vec<Kind>,
 }
 
-/// One departure date and the fastest flight found for it.
-#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
-pub struct Departure {
-    /// Departure date, ISO 8601, TDB.
-    pub depart: String,
-    /// Days since the first departure date.
-    pub depart_d: f64,
-    /// Flight time, d; null where no flight was found.
-    pub time_d: Option<f64>,
-    /// Arrival date, ISO 8601, TDB.
-    pub arrive: Option<String>,
-    /// Whether it arrives earlier than a flight that leaves before.
-    pub breaks_law: bool,
-    /// Whether the flight time is a local minimum.
-    pub best: bool,
-    /// Whether no other flight of the study arrives earlier.
-    pub earliest: bool,
+impl Row<'_> {
+    fn arrive_d(&self) -> Option<f64> {
+        self.row.time_d.map(|time_d| self.depart_d + time_d)
+    }
+
+    fn is(&self, kind: Kind) -> bool {
+        self.kinds.contains(&kind)
+    }
+}
+
+/// The departure dates of a study: the first, days since J2000, and days from it to each.
+pub(crate) struct Dates {
+    pub(crate) first_d: f64,
+    pub(crate) offsets_d: Vec<f64>,
+    days: HashMap<String, f64>,
+}
+
+impl Dates {
+    /// # Errors
+    /// A study without dates, or one that is none.
+    pub(crate) fn of(study: &StudyReport) -> Result<Dates, FigureError> {
+        let wrong = || FigureError::UnknownName(study.study.clone());
+        let axis = study.axes.first().ok_or_else(wrong)?;
+        let mut first_d = None;
+        let mut dates = Dates { first_d: 0.0, offsets_d: Vec::new(), days: HashMap::new() };
+        for value in &axis.values {
+            let AxisValue::Text(date) = value else { return Err(wrong()) };
+            let day = start_d(Some(date)).ok_or_else(wrong)?;
+            let first = *first_d.get_or_insert(day);
+            dates.offsets_d.push(day - first);
+            dates.days.insert(date.clone(), day - first);
+        }
+        dates.first_d = first_d.ok_or_else(wrong)?;
+        Ok(dates)
+    }
+
+    /// Days from the first date to this one of them.
+    pub(crate) fn offset_d(&self, date: &str) -> Option<f64> {
+        self.days.get(date).copied()
+    }
+
+    fn span_d(&self) -> f64 {
+        self.offsets_d.last().copied().unwrap_or(0.0)
+    }
+
+    /// Days between two dates, one day for a single one.
+    pub(crate) fn step_d(&self) -> f64 {
+        self.offsets_d.get(1).copied().unwrap_or(1.0)
+    }
 }
 
 /// Lays out flight time and arrival date against departure date.
 ///
-/// # Units
-/// CSS pixels, y down. Both panels: x in days since the first departure date; y in days of flight, and in days
-/// since the first departure date for the arrival.
-///
 /// # Errors
-/// A size outside its range, or a start that is no date.
-pub fn departures(study: &Departures, options: &FigureOptions) -> Result<Figure, FigureError> {
-    check_options(options)?;
-    let first_d = first_day(&study.start)?;
+/// A study without dates.
+pub(crate) fn draw(study: &StudyReport, options: &FigureOptions) -> Result<Figure, FigureError> {
+    let dates = Dates::of(study)?;
     let theme = Theme::named(options.theme);
     let theme = if options.stale { theme.greyed() } else { *theme };
     let whole = Rect { left: 0.0, top: 0.0, width: options.width, height: options.height };
     let mut shapes = vec![Shape::Polygon { points: whole.corners(), color: theme.sheet }];
     let used = notes::set(&mut shapes, &sentences(study, options.stale), whole.grown(-10.0), &theme);
     let top = if used > 0.0 { used + 14.0 } else { 4.0 };
-    let height = (whole.height - top - FOOT) / 2.0 - NAME_HEIGHT - 4.0;
-    let found: Vec<(&Departure, f64)> =
-        study.rows.iter().filter_map(|row| row.time_d.map(|time_d| (row, time_d))).collect();
-    let times: Vec<f64> = found.iter().map(|(_, time_d)| *time_d).collect();
-    let arrivals: Vec<f64> = found.iter().map(|(row, time_d)| row.depart_d + time_d).collect();
+    let height = ((whole.height - top - FOOT) / 2.0 - NAME_HEIGHT - 4.0).max(8.0);
+    let rows = rows(study, &dates);
+    let times: Vec<f64> = rows.iter().filter_map(|row| row.row.time_d).collect();
+    let arrivals: Vec<f64> = rows.iter().filter_map(Row::arrive_d).collect();
     let time_axis = Axis::numbers(&times, height);
-    let arrival_axis = Axis::dates(&arrivals, first_d, height);
+    let arrival_axis = Axis::dates(&arrivals, dates.first_d, height);
     let widest = time_axis
         .ticks
         .iter()
@@ -91,90 +112,103 @@ pub fn departures(study: &Departures, options: &FigureOptions) -> Result<Figure,
         .fold(24.0, f64::max);
     let left = (widest + 14.0).min(whole.width / 3.0);
     let width = (whole.width - left - 16.0).max(8.0);
-    let dates = Calendar::new(first_d, [0.0, study.span_d.max(1.0)], left, width, whole.width);
+    let calendar = Calendar::new(dates.first_d, [0.0, dates.span_d().max(1.0)], left, width, whole.width);
 
     let mut panels = Vec::new();
+    let slot = height + NAME_HEIGHT + 4.0;
     for (k, (name, unit, axis)) in
         [("Flight time (d)", "d", &time_axis), ("Arrival (TDB)", "date", &arrival_axis)]
             .into_iter()
             .enumerate()
     {
-        let slot = height + NAME_HEIGHT + 4.0;
-        let frame = Rect { left, top: top + slot * k as f64 + NAME_HEIGHT, width, height: height.max(8.0) };
-        let mut plot = Plot { shapes: &mut shapes, frame, dates: &dates, axis, theme: &theme };
-        plot.frame(name, found.is_empty());
-        let value =
-            |row: &Departure| row.time_d.map(|time_d| if k == 0 { time_d } else { row.depart_d + time_d });
-        plot.rows(study, value);
-        plot.named(study, k == 0, value);
-        let column = if k == 0 { "time_d" } else { "arrive_d" };
-        panels.push(plot.panel(column, unit));
+        let frame = Rect { left, top: top + slot * k as f64 + NAME_HEIGHT, width, height };
+        let mut plot = Plot { shapes: &mut shapes, frame, dates: &calendar, axis, theme: &theme };
+        plot.frame(name, times.is_empty());
+        let value = |row: &Row<'_>| if k == 0 { row.row.time_d } else { row.arrive_d() };
+        plot.rows(&rows, &dates, value);
+        plot.named(&rows, k == 0, value);
+        panels.push(plot.panel(if k == 0 { "time_d" } else { "arrive_d" }, unit));
     }
-    dates.label(&mut shapes, whole.height - FOOT - 2.0, &theme);
+    calendar.label(&mut shapes, top + 2.0 * slot - 2.0, &theme);
     Ok(Figure {
         width: options.width,
         height: options.height,
-        title: printable(&format!("Departure dates: {}", study.ends)),
+        title: "Departure dates".to_owned(),
         description: describe(study),
         shapes,
         map: FigureMap { panels },
     })
 }
 
+/// The rows with a place on the calendar, in order of dates, with why they are picked.
+fn rows<'a>(study: &'a StudyReport, dates: &Dates) -> Vec<Row<'a>> {
+    let mut rows: Vec<Row<'a>> = study
+        .rows
+        .iter()
+        .filter_map(|row| {
+            let picked = study.best.iter().filter(|pick| pick.depart == row.depart).map(|pick| pick.kind);
+            Some(Row { row, depart_d: dates.offset_d(&row.depart)?, kinds: picked.collect() })
+        })
+        .collect();
+    rows.sort_by(|a, b| a.depart_d.total_cmp(&b.depart_d));
+    rows
+}
+
 /// What a reader of the figure would see, in words.
-pub(crate) fn describe(study: &Departures) -> String {
-    let found: Vec<_> = study.rows.iter().filter(|row| row.time_d.is_some()).collect();
+fn describe(study: &StudyReport) -> String {
+    let found: Vec<(&StudyRow, f64)> =
+        study.rows.iter().filter_map(|row| row.time_d.map(|time_d| (row, time_d))).collect();
     let mut words = format!(
-        "Flight time and arrival date against departure date, {} dates from {}: {} with a flight.",
+        "Flight time and arrival date against departure date: {} dates so far, {} with a flight.",
         study.rows.len(),
-        study.start,
         found.len()
     );
-    let time = |row: &&&Departure| row.time_d.unwrap_or(f64::INFINITY);
-    let best = found.iter().min_by(|a, b| time(a).total_cmp(&time(b)));
-    let worst = found.iter().max_by(|a, b| time(a).total_cmp(&time(b)));
-    if let (Some(best), Some(worst)) = (best, worst) {
+    let best = found.iter().min_by(|a, b| a.1.total_cmp(&b.1));
+    let worst = found.iter().max_by(|a, b| a.1.total_cmp(&b.1));
+    if let (Some((best, short)), Some((worst, long))) = (best, worst) {
         words += &format!(
             " Shortest {} days, leaving {}; longest {} days, leaving {}.",
-            number(time(&best), 1),
+            number(*short, 1),
             best.depart,
-            number(time(&worst), 1),
+            number(*long, 1),
             worst.depart
         );
     }
-    let local: Vec<_> = found.iter().filter(|row| row.best).map(|row| row.depart.as_str()).collect();
-    if !local.is_empty() {
-        words += &format!(" Best departures around: {}.", local.join(", "));
+    let picked = |kind| {
+        let all = study.best.iter().filter(|pick| pick.kind == kind).map(|pick| pick.depart.as_str());
+        all.collect::<Vec<_>>().join(", ")
+    };
+    let (shortest, earliest) = (picked(Kind::Shortest), picked(Kind::Earliest));
+    if !shortest.is_empty() {
+        words += &format!(" Shorter than their neighbours: {shortest}.");
     }
-    let broken = study.rows.iter().filter(|row| row.breaks_law).count();
+    if !earliest.is_empty() {
+        words += &format!(" Earliest arrival, leaving: {earliest}.");
+    }
+    let broken = study.rows.iter().filter(|row| row.law == LawMark::Broken).count();
     if broken > 0 {
-        words += &format!(" {broken} arrive earlier than a flight that leaves before.");
+        words += &format!(" {broken} arrive after a flight that leaves later.");
     }
     printable(&words)
 }
 
-fn sentences(study: &Departures, stale: bool) -> Vec<String> {
+/// What must be said in the picture.
+pub(crate) fn sentences(study: &StudyReport, stale: bool) -> Vec<String> {
     let mut out = Vec::new();
     if stale {
         out.push("Out of date: the inputs have changed.".to_owned());
     }
-    if study.rows.iter().any(|row| row.breaks_law) {
-        out.push("\u{d7} arrives earlier than a flight that leaves before: for that one a faster flight was missed.".to_owned());
+    if study.rows.iter().any(|row| row.law == LawMark::Broken) {
+        out.push(
+            "\u{d7} a flight that leaves later arrives earlier: a faster one exists than was found."
+                .to_owned(),
+        );
     }
     let lost = study.rows.iter().filter(|row| row.time_d.is_none()).count();
     if lost > 0 {
-        out.push(format!("No flight found for {lost} of {} dates (marks at the foot).", study.rows.len()));
+        out.push(format!("| no flight found: {lost} of {}.", study.rows.len()));
     }
     out
-}
-
-/// The first departure date, days since J2000.
-pub(crate) fn first_day(start: &str) -> Result<f64, FigureError> {
-    start_d(Some(start)).ok_or(FigureError::Option {
-        name: "start",
-        value: f64::NAN,
-        rule: "must be a date such as 2031-05-17",
-    })
 }
 
 /// A vertical axis.
@@ -313,13 +347,13 @@ impl Plot<'_> {
     }
 
     /// Lines between neighbouring dates, a dot for each, marks for what is wrong.
-    fn rows(&mut self, study: &Departures, value: impl Fn(&Departure) -> Option<f64>) {
+    fn rows(&mut self, rows: &[Row<'_>], dates: &Dates, value: impl Fn(&Row<'_>) -> Option<f64>) {
         let sail = self.theme.sail;
         let mut runs: Vec<Vec<Point>> = vec![Vec::new()];
         let mut last_d = f64::NEG_INFINITY;
-        for row in &study.rows {
+        for row in rows {
             // A date that is not there yet leaves a gap.
-            if row.depart_d - last_d > 1.5 * study.step_d {
+            if row.depart_d - last_d > 1.5 * dates.step_d() {
                 runs.push(Vec::new());
             }
             last_d = row.depart_d;
@@ -328,7 +362,7 @@ impl Plot<'_> {
                 _ => runs.push(Vec::new()),
             }
         }
-        let roomy = self.frame.width / (study.span_d / study.step_d.max(1e-9)).max(1.0) > 5.0;
+        let roomy = self.frame.width > 5.0 * dates.offsets_d.len() as f64;
         for run in runs {
             if roomy || run.len() == 1 {
                 let dot = |&centre: &Point| Shape::Disc { centre, radius: 2.2, color: sail };
@@ -339,9 +373,9 @@ impl Plot<'_> {
             }
         }
         let alarm = self.theme.alarm;
-        for row in &study.rows {
+        for row in rows {
             match value(row) {
-                Some(value) if row.breaks_law => {
+                Some(value) if row.row.law == LawMark::Broken => {
                     let at = self.px(row.depart_d, value);
                     self.shapes.extend(cross(at, 4.5, Stroke::solid(alarm, 1.8)));
                 }
@@ -355,20 +389,17 @@ impl Plot<'_> {
         }
     }
 
-    /// Rings and dates at the best departures, or at the earliest arrival.
-    fn named(&mut self, study: &Departures, times: bool, value: impl Fn(&Departure) -> Option<f64>) {
+    /// Rings and dates at the shortest flights, or at the earliest arrival.
+    fn named(&mut self, rows: &[Row<'_>], times: bool, value: impl Fn(&Row<'_>) -> Option<f64>) {
         let mut room = Room::new(self.frame);
         let drawn: Vec<Point> =
-            study.rows.iter().filter_map(|row| value(row).map(|v| self.px(row.depart_d, v))).collect();
+            rows.iter().filter_map(|row| value(row).map(|v| self.px(row.depart_d, v))).collect();
         room.draw_line(&drawn, 2.0);
-        let ink = self.theme.ink;
-        let mut chosen: Vec<(&Departure, f64)> = study
-            .rows
-            .iter()
-            .filter(|row| if times { row.best } else { row.earliest })
-            .filter_map(|row| value(row).map(|v| (row, v)))
-            .collect();
+        let kind = if times { Kind::Shortest } else { Kind::Earliest };
+        let mut chosen: Vec<(&Row<'_>, f64)> =
+            rows.iter().filter(|row| row.is(kind)).filter_map(|row| value(row).map(|v| (row, v))).collect();
         chosen.sort_by(|a, b| a.1.total_cmp(&b.1));
+        let ink = self.theme.ink;
         let style = Style { size: TICK_SIZE, color: ink, weight: Weight::Normal };
         for (rank, (row, v)) in chosen.into_iter().enumerate() {
             let at = self.px(row.depart_d, v);
@@ -378,13 +409,13 @@ impl Plot<'_> {
             if rank >= MOST_NAMED {
                 continue;
             }
-            let content = match (times, &row.arrive) {
-                (true, _) => format!("{}: {} d", row.depart, number(v, 1)),
+            let content = match (times, &row.row.arrive) {
+                (true, _) => format!("{}: {} d", row.row.depart, number(v, 1)),
                 (false, Some(arrive)) => format!("earliest {}", arrive.get(..10).unwrap_or(arrive)),
                 (false, None) => continue,
             };
-            let below = Point::new(0.0, if times { 1.0 } else { -1.0 });
-            if let Some(text) = room.place(&content, style, beside(at, below, 9.0, &content, style), 40.0) {
+            let first = Point::new(0.0, if times { 1.0 } else { -1.0 });
+            if let Some(text) = room.place(&content, style, beside(at, first, 9.0, &content, style), 40.0) {
                 self.shapes.push(Shape::Text(text));
             }
         }

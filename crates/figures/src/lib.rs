@@ -35,10 +35,9 @@ mod track;
 mod view;
 
 use scenario::report::{Columns, Report};
+use scenario::study::StudyReport;
 use serde::{Deserialize, Serialize};
 
-pub use departure_map::{DepartureMap, MapCell, departure_map};
-pub use departures::{Departure, Departures, departures};
 pub use describe::describe;
 pub use paint::{PaintError, paint};
 pub use shapes::{Anchor, Point, Shape, Stroke, Text, Weight};
@@ -271,6 +270,21 @@ pub fn layout(
         shapes: drawing.shapes,
         map: FigureMap { panels: drawing.panels },
     })
+}
+
+/// Lays out the picture of a study of departure dates: curves over one axis, a map over two.
+///
+/// # Units
+/// CSS pixels, y down. Every panel's x counts days since the first departure date; a map's reaches half a step beyond
+/// the first and the last. With one axis there are two panels: y in days of flight (`time_d`), and for the arrival in
+/// days since the first departure date (`arrive_d`). A map has one, named after the field of its sails: y counts them
+/// from 0, half of one beyond both ends.
+///
+/// # Errors
+/// An option outside its range, or a study without dates.
+pub fn study(study: &StudyReport, options: &FigureOptions) -> Result<Figure, FigureError> {
+    check_options(options)?;
+    if study.axes.len() > 1 { departure_map::draw(study, options) } else { departures::draw(study, options) }
 }
 
 /// Shapes and panels of a figure being laid out.

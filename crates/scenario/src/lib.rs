@@ -18,9 +18,7 @@ pub mod words;
 mod baseline;
 mod cautions;
 mod craft;
-#[cfg_attr(not(test), expect(dead_code, reason = "the report does not call it yet"))]
 mod dated;
-#[cfg_attr(not(test), expect(dead_code, reason = "the report does not call it yet"))]
 mod earth;
 mod flight;
 mod histories;

@@ -46,16 +46,6 @@ const NOT_YET: &[Refusal] = &[
         rule: "is not solved by this version: leave it out (1)",
     },
     Refusal {
-        key: "vinf_km_s",
-        applies: |s| s.vinf_km_s > 0.0,
-        rule: "is not solved by this version: leave it out (0)",
-    },
-    Refusal {
-        key: "vinf_arrive_km_s",
-        applies: |s| s.vinf_arrive_km_s > 0.0,
-        rule: "is not solved by this version: leave it out (0)",
-    },
-    Refusal {
         key: "arrive",
         applies: |s| s.arrive == Arrive::Flyby,
         rule: "flyby is not solved by this version: use arrive=orbit or arrive=rendezvous",
@@ -69,6 +59,16 @@ const NOT_YET: &[Refusal] = &[
 
 /// What contradicts itself or is another problem than it seems.
 const NEVER: &[Refusal] = &[
+    Refusal {
+        key: "vinf_km_s",
+        applies: |s| s.vinf_km_s > 0.0 && s.steer != Steer::Fastest,
+        rule: "is used by steer=fastest only: leave it out (0)",
+    },
+    Refusal {
+        key: "vinf_arrive_km_s",
+        applies: |s| s.vinf_arrive_km_s > 0.0 && s.steer != Steer::Fastest,
+        rule: "is used by steer=fastest only: leave it out (0)",
+    },
     Refusal {
         key: "area_m2",
         applies: |s| ideal_ac_mm_s2(s).is_some_and(|ac| !(0.01..=20.0).contains(&ac)),

@@ -174,6 +174,8 @@ pub struct Flight {
     pub lead_angle_deg: Option<f64>,
     /// Largest distance from the Earth, au.
     pub earth_range_max_au: Option<f64>,
+    /// The flight as seen from the Earth; null without a departure date.
+    pub earth_view: Option<EarthView>,
     /// Eccentricity of the orbit the craft ends on.
     pub final_eccentricity: Option<f64>,
     /// Flight time estimate where nothing converged, d.

@@ -7,7 +7,7 @@ use crate::link::{LinkError, encode};
 use crate::refused::refused;
 use crate::report::{Columns, Constants, Ends, Program, Report};
 use crate::schema::Scenario;
-use crate::{baseline, cautions, craft, flight, place, sentence};
+use crate::{baseline, cautions, craft, dated, flight, place, sentence};
 
 /// A report and the histories behind it.
 #[derive(Clone, Debug)]
@@ -36,8 +36,10 @@ pub fn run(scenario: &Scenario) -> Result<Answer, Vec<LinkError>> {
         return Err(reasons);
     }
     let craft = craft::craft(scenario);
-    let impulsive = baseline::impulsive(scenario).map_err(|error| vec![error])?;
+    let mut impulsive = baseline::impulsive(scenario).map_err(|error| vec![error])?;
     let (flight, columns) = flight::flight(scenario, craft.lightness);
+    let dated = dated::dated(scenario, flight.time_d).map_err(|error| vec![error])?;
+    (impulsive.dated, impulsive.dated_same_dates) = (dated.least, dated.same_dates);
     let report = Report {
         program: program(),
         link: encode(scenario),

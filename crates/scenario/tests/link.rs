@@ -5,7 +5,7 @@ use std::time::Instant;
 
 use scenario::keys::KEYS;
 use scenario::link::{LinkError, decode, encode, entries};
-use scenario::schema::Scenario;
+use scenario::schema::{Range, Scenario};
 
 #[track_caller]
 fn read(text: &str) -> Scenario {
@@ -46,9 +46,19 @@ fn version_one_defaults_are_frozen() {
     // Written out by hand: a change here would change the meaning of every link ever shared.
     let frozen = "v=1&area_m2=6400&mass_kg=60&film=ideal&cone_max_deg=90&control=1&from=earth&to=mars\
                   &geometry=coplanar&vinf_km_s=0&vinf_arrive_km_s=0&arrive=orbit&steer=fastest&isp_s=320\
-                  &park_km=300&capture_km=none&stage_dry=0.1";
+                  &park_km=300&capture_km=none&stage_dry=0.1&span=2030-01-01,2034-01-01&step_d=10&ac_range=0.5,3,20";
     check_canonical(frozen, "v=1");
-    for key in ["title", "temp_max_k", "ageing", "depart", "cone_deg", "deadline_d", "bus_kg", "segments"] {
+    for key in [
+        "title",
+        "temp_max_k",
+        "ageing",
+        "depart",
+        "cone_deg",
+        "deadline_d",
+        "bus_kg",
+        "segments",
+        "area_range",
+    ] {
         let found = entries(&Scenario::default()).into_iter().find(|(known, _)| *known == key);
         assert_eq!(found, Some((key, String::new())));
     }
@@ -229,6 +239,45 @@ fn dates_are_days_within_the_elements() {
 }
 
 #[test]
+fn studies_have_keys_of_their_own() {
+    let study = read("span=2031-05-17,2033-01-01&step_d=7&ac_range=0.2,1,20&area_range=1e3,4e3,3").study;
+    assert_eq!(study.span.map(|date| date.to_string()), ["2031-05-17", "2033-01-01"]);
+    assert_eq!(study.step_d, 7);
+    assert_eq!(study.ac_range, Range { first: 0.2, last: 1.0, count: 20 });
+    assert_eq!(study.area_range.map(|range| range.values()), Some(vec![1000.0, 2000.0, 4000.0]));
+    check_canonical("area_range=1e3,4e3,3&ac_range=0.5,3,20&step_d=7", "v=1&step_d=7&area_range=1000,4000,3");
+    check_canonical("span=2030-01-01,2030-01-01", "v=1&span=2030-01-01,2030-01-01");
+    for (text, part) in [
+        ("span=2031-05-17", "two dates"),
+        ("span=2031-05-17,2031-02-29", "calendar"),
+        ("span=2031-05-17,2031-05-16", "earlier date first"),
+        ("span=1799-12-31,2031-05-16", "1800-01-01"),
+        ("span=2031-05-17,2031-05-18,2031-05-19", "YYYY-MM-DD"),
+        ("step_d=0", "whole number, 1 to 1000 d"),
+        ("step_d=2.5", "whole number"),
+        ("ac_range=0.5,3", "three numbers"),
+        ("ac_range=3,0.5,4", "at least 1.01 times"),
+        ("ac_range=0.001,0.5,4", "each acceleration must be 0.01 to 20"),
+        ("ac_range=0.5,3,1", "number of values must be 2 to 200"),
+        ("ac_range=0.5,3,2.5", "whole number"),
+        ("area_range=0,3,4", "each area must be 0.001 to 1000000000"),
+    ] {
+        let (key, value) = text.split_once('=').expect("a pair");
+        check_error(text, key, value, part);
+    }
+}
+
+#[test]
+fn range_values_are_short_and_ascend() {
+    let values = read("ac_range=0.5,3,20").study.ac_range.values();
+    assert_eq!((values.len(), values[0], values[1], values[19]), (20, 0.5, 0.549446, 3.0));
+    let close = read("ac_range=1,1.01,200").study.ac_range.values();
+    assert!(close.windows(2).all(|pair| pair[0] < pair[1]));
+    let large = read("area_range=1234567,9876543,3").study.area_range.expect("given").values();
+    assert_eq!(large[1], 3_491_880.0);
+}
+
+#[test]
 fn segments_are_counted_in_whole_numbers() {
     assert_eq!(read("segments=1e1").segments, Some(10));
     check_error("segments=2.5", "segments", "2.5", "whole number");
@@ -313,8 +362,9 @@ fn what_is_read_can_be_written() {
     let short = format!("title={title}&from=orbit&from_orbit={orbit}&to=orbit&to_orbit={orbit}");
     assert!(decode(&short).is_ok());
     let mut long = format!("{short}&film=optics&optics={}&ageing={tiny},{eleven}", [tiny; 6].join(","));
-    for key in
-        KEYS.iter().filter(|info| info.min.is_some() && !["ac_mm_s2", "segments", "step_d"].contains(&info.key))
+    for key in KEYS
+        .iter()
+        .filter(|info| info.min.is_some() && !["ac_mm_s2", "segments", "step_d"].contains(&info.key))
     {
         // A number with many digits that lies in the range of each of these keys.
         let value = match key.key {

@@ -7,7 +7,8 @@ use scenario::date::Date;
 use scenario::keys::KEYS;
 use scenario::link::{decode, encode, entries};
 use scenario::schema::{
-    Ageing, Arrive, Baseline, CraftInput, Film, Geometry, OrbitInput, Place, Range, Scenario, Steer, StudyKeys,
+    Ageing, Arrive, Baseline, CraftInput, Film, Geometry, OrbitInput, Place, Range, Scenario, Steer,
+    StudyKeys,
 };
 
 /// Any number of a range, edges included.
@@ -75,11 +76,8 @@ fn ranges(min: f64, max: f64) -> impl Strategy<Value = Range> {
 
 fn studies() -> impl Strategy<Value = StudyKeys> {
     let ranges = (ranges(0.01, 20.0), option::of(ranges(1e-3, 1e9)));
-    (dates(), dates(), 1u32..=1000, ranges).prop_map(|(one, other, step_d, (ac_range, area_range))| StudyKeys {
-        span: [one.min(other), one.max(other)],
-        step_d,
-        ac_range,
-        area_range,
+    (dates(), dates(), 1u32..=1000, ranges).prop_map(|(one, other, step_d, (ac_range, area_range))| {
+        StudyKeys { span: [one.min(other), one.max(other)], step_d, ac_range, area_range }
     })
 }
 

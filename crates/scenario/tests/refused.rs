@@ -48,8 +48,8 @@ fn what_this_version_does_not_solve_is_said_key_by_key() {
     check_reason("temp_max_k=500", "temp_max_k", "500", "leave it out");
     check_reason("control=0.5", "control", "0.5", "leave it out");
     check_reason("depart=2031-05-17", "depart", "2031-05-17", "geometry=spatial");
-    check_reason("vinf_km_s=1", "vinf_km_s", "1", "leave it out");
-    check_reason("vinf_arrive_km_s=1", "vinf_arrive_km_s", "1", "leave it out");
+    check_reason("vinf_km_s=1&steer=local", "vinf_km_s", "1", "steer=fastest");
+    check_reason("vinf_arrive_km_s=1&steer=fixed", "vinf_arrive_km_s", "1", "steer=fastest");
     check_reason("arrive=rendezvous", "arrive", "rendezvous", "geometry=spatial");
     check_reason("arrive=flyby", "arrive", "flyby", "arrive=orbit");
     check_reason("segments=10", "segments", "10", "smooth steering");

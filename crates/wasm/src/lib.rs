@@ -4,9 +4,11 @@
 //! one kind of JavaScript `Error`, whose `detail` names each key, value and rule. What is valid is decided in
 //! `scenario`, never here: the conversion lets NaN and unknown fields through.
 
+pub mod study;
+
 use std::collections::BTreeMap;
 
-use figures::{Figure, FigureMap, FigureOptions};
+use figures::{Figure, FigureOptions};
 use js_sys::{Error, Float64Array, Object, Reflect};
 use plotters_canvas::CanvasBackend;
 use scenario::link::{self, LinkError};
@@ -166,51 +168,6 @@ impl Figures {
     pub fn describe(&self, name: &str) -> Result<String, Error> {
         figures::describe(name, &self.report, &self.columns).map_err(plain_error)
     }
-}
-
-/// What a drawn study tells the page.
-#[derive(Serialize)]
-struct DrawnStudy {
-    /// Where its panels are.
-    #[serde(flatten)]
-    map: FigureMap,
-    /// What a reader would see.
-    words: String,
-}
-
-/// Draws a study of departure dates to fill the canvas: `{panels, words}`.
-///
-/// # Errors
-/// A study of another shape, options that do not exist, or a canvas that cannot be drawn on.
-#[wasm_bindgen]
-pub fn draw_departures(
-    canvas: HtmlCanvasElement,
-    study: JsValue,
-    options: JsValue,
-) -> Result<JsValue, Error> {
-    let options: FigureOptions = from_js(options)?;
-    let figure = figures::departures(&from_js(study)?, &options).map_err(plain_error)?;
-    draw_study(figure, options.scale, canvas)
-}
-
-/// Draws a study over departure dates and accelerations to fill the canvas: `{panels, words}`.
-///
-/// # Errors
-/// A study of another shape, options that do not exist, or a canvas that cannot be drawn on.
-#[wasm_bindgen]
-pub fn draw_departure_map(
-    canvas: HtmlCanvasElement,
-    study: JsValue,
-    options: JsValue,
-) -> Result<JsValue, Error> {
-    let options: FigureOptions = from_js(options)?;
-    let figure = figures::departure_map(&from_js(study)?, &options).map_err(plain_error)?;
-    draw_study(figure, options.scale, canvas)
-}
-
-fn draw_study(figure: Figure, scale: f64, canvas: HtmlCanvasElement) -> Result<JsValue, Error> {
-    paint(&figure, scale, canvas)?;
-    to_js(&DrawnStudy { words: figure.description, map: figure.map })
 }
 
 fn paint(figure: &Figure, scale: f64, canvas: HtmlCanvasElement) -> Result<(), Error> {

@@ -4,7 +4,6 @@ The table is written again after every row, and a row of the same case is replac
 it had, and `make_spatial_times.py orbit mercury` redoes only the rows of that kind and target.
 """
 
-import dataclasses
 import datetime
 import json
 import math
@@ -48,20 +47,44 @@ def local_solutions(found):
     return groups
 
 
-def search_orbit(problem):
-    """Departure held in windows all round the orbit, coplanar flights of three accelerations as guesses; then freed.
+def grow_shape(program, guess, window):
+    """From coplanar circles to the real orbits: eccentricity and inclination grow, each flight guessing the next.
 
-    An optimum inside its window is a free one already; of those at an edge the three fastest are set free.
-    Returns (free local optima by name, guesses tried, map of the windows).
+    The departure anomaly stays within `window` of where it began. Steps halve on failure. Returns a flight or None.
     """
-    found, tried, windows, edges = {}, 0, [], []
+    centre = guess["anomaly"][0]
+    shape, step, flight = 0.0, 0.1, None
+    while True:
+        if flight is not None:
+            guess = direct.as_guess(flight)
+        guess["window"] = max(1e-3, window - abs(guess["anomaly"][0] - centre))
+        goal = 0.0 if flight is None else min(1.0, shape + step)
+        grown = program.solve(guess, goal, warm=True)
+        if grown is not None:
+            shape, flight, step = goal, grown, min(0.1, 1.5 * step)
+            if shape == 1.0:
+                return flight
+        elif flight is None or step < 0.02:
+            return None
+        else:
+            step /= 2
+
+
+def search_orbit(problem):
+    """Coplanar flights laid round the whole orbit and grown into the real one, departure held in a window; then freed.
+
+    Flights of three accelerations are laid down, 12 + 6 + 6 of them. Returns (free local optima by name, guesses tried,
+    map of the held flights).
+    """
+    found, tried, windows = {}, 0, []
     for factor, count in ((1.0, 12), (0.75, 6), (1.4, 6)):
         plane = plane_direct.best_flight(factor * problem.beta, TARGETS_AU[problem.target])
-        mesh = np.linspace(0, 1, max(30, math.ceil(plane["angle"] / (2 * math.pi) * 16)) + 1)
-        program = direct.Transcription(problem, mesh, 5.0)
-        for name, guess in guesses.orbit_guesses(problem, plane, count, 1.2 * math.pi / count):
+        elements_count = max(30, math.ceil(plane["angle"] / (2 * math.pi) * 20))
+        program = direct.Transcription(problem, plane_direct.refined_mesh(plane, elements_count), 5.0)
+        window = 1.2 * math.pi / count
+        for name, guess in guesses.orbit_guesses(problem, plane, count):
             tried += 1
-            held = program.solve(guess)
+            held = grow_shape(program, guess, window)
             if held is None:
                 continue
             start, name = held["states"][:, 0], f"{factor} x acceleration, {name}"
@@ -70,53 +93,12 @@ def search_orbit(problem):
                     "guess": name,
                     "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
                     "time_d": round(held["t_f"] * TIME_UNIT_D, 3),
-                    "at_window_edge": held["at_window_edge"],
                 }
             )
-            if held["at_window_edge"]:
-                edges.append((held["t_f"], name, held, program))
-            else:
-                found[name] = held
-    for _, name, held, program in sorted(edges, key=lambda e: e[0])[:3]:
-        freed = program.solve(direct.as_guess(held))
-        if freed is not None:
-            found[name] = freed
+            freed = program.solve(direct.as_guess(held), warm=True)
+            if freed is not None:
+                found[name] = freed
     return found, tried, windows
-
-
-def search_orbit_by_shape(problem, count=8, steps=(0.1, 0.3, 0.5, 0.7, 0.85, 1.0)):
-    """For eccentric targets many revolutions away: eccentricity and inclination grow in steps, each flight the next guess.
-
-    Departure stays within a window of the start while the shape grows. Returns the same as search_orbit.
-    """
-    found, windows = {}, []
-    plane = plane_direct.best_flight(problem.beta, TARGETS_AU[problem.target])
-    mesh = np.linspace(0, 1, max(30, math.ceil(plane["angle"] / (2 * math.pi) * 20)) + 1)
-    programs = [direct.Transcription(dataclasses.replace(problem, shape=shape), mesh, 30.0) for shape in steps]
-    for name, guess in guesses.orbit_guesses(problem, plane, count, 1.2 * math.pi / count):
-        centre = guess["anomaly"][0]
-        for program in programs:
-            held = program.solve(guess)
-            if held is None:
-                break
-            guess = direct.as_guess(held)
-            guess["window"] = max(1e-3, 1.2 * math.pi / count - abs(guess["anomaly"][0] - centre))
-        if held is None:
-            continue
-        start, edge = held["states"][:, 0], abs(held["anomaly"][0] - centre) > 1.19 * math.pi / count
-        windows.append(
-            {
-                "guess": f"growing shape, {name}",
-                "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
-                "time_d": round(held["t_f"] * TIME_UNIT_D, 3),
-                "at_window_edge": bool(edge),
-            }
-        )
-        print(windows[-1], flush=True)
-        freed = programs[-1].solve(direct.as_guess(held))
-        if freed is not None:
-            found[windows[-1]["guess"]] = freed
-    return found, count, windows
 
 
 def search_rendezvous(problem, t_plane):

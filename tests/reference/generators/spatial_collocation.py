@@ -29,34 +29,38 @@ IPOPT = {
     "ipopt.max_iter": 400,
     "ipopt.mu_strategy": "adaptive",
 }
+WARM = {
+    "ipopt.mu_strategy": "monotone",
+    "ipopt.mu_init": 1e-4,
+    "ipopt.bound_push": 1e-6,
+    "ipopt.bound_frac": 1e-6,
+    "ipopt.max_iter": 150,
+}
 
 
 @dataclass(frozen=True)
 class Problem:
-    """One flight from the Earth's orbit. depart_d: days of TDB since J2000, None for an orbit match.
-
-    shape scales eccentricity and inclination of the target's orbit in an orbit match: 1 is the problem itself, less
-    than 1 a step on the way from the coplanar circle.
-    """
+    """One flight from the Earth's orbit. depart_d: days of TDB since J2000, None for an orbit match."""
 
     target: str
     beta: float
     depart_d: float | None = None
     vinf_km_s: float = 0.0
     vinf_arrive_km_s: float = 0.0
-    shape: float = 1.0
 
     @property
     def rendezvous(self):
         return self.depart_d is not None
 
 
-def end_state(problem, body, eccentric, t_f):
-    """State (6 x 1 symbol) of a body at departure (t_f None) or arrival, and Kepler's equation as a residual or None."""
+def end_state(problem, body, eccentric, t_f, shape):
+    """State (6 x 1 symbol) of a body at departure (t_f None) or arrival, and Kepler's equation as a residual or None.
+
+    shape scales eccentricity and inclination in an orbit match: 1 is the problem itself, 0 coplanar circles.
+    """
     if not problem.rendezvous:
         a, e, inclination, _, arg, node = elements.elements_at(body, 0.0)
-        if body == problem.target:
-            e, inclination = problem.shape * e, problem.shape * inclination
+        e, inclination = shape * e, shape * inclination
         position, velocity = elements.state_on_ellipse(a, e, inclination, arg, node, eccentric)
         return ca.vertcat(*position, *velocity), None
     days = problem.depart_d + t_f * TIME_UNIT_D
@@ -75,6 +79,7 @@ class Transcription:
         width = np.diff(mesh)
         self.s_inner = (mesh[:-1, None] + width[:, None] * points[None, 1:]).ravel()
         t_f, anomaly = ca.SX.sym("t_f"), ca.SX.sym("anomaly", 2)
+        shape = ca.SX.sym("shape")
         leave, meet = ca.SX.sym("leave", 3), ca.SX.sym("meet", 3)
         nodes = ca.SX.sym("nodes", 6, n + 1)
         inner = ca.SX.sym("inner", 6, n * DEGREE)
@@ -91,8 +96,8 @@ class Transcription:
         if problem.rendezvous:
             first, equations = ca.DM(elements.state_at("earth", problem.depart_d)), [anomaly[0]]
         else:
-            first, equations = end_state(problem, "earth", anomaly[0], None)[0], []
-        last, kepler = end_state(problem, problem.target, anomaly[1], t_f)
+            first, equations = end_state(problem, "earth", anomaly[0], None, shape)[0], []
+        last, kepler = end_state(problem, problem.target, anomaly[1], t_f, shape)
         if kepler is not None:
             equations.append(kepler)
         start = nodes[:, 0] - first - ca.vertcat(0, 0, 0, leave)
@@ -112,25 +117,29 @@ class Transcription:
         unequal = ca.vertcat(*unequal)
         self.n_equal, self.n_unequal = equal.shape[0], unequal.shape[0]
         z = ca.vertcat(t_f, anomaly, leave, meet, ca.vec(nodes), ca.vec(inner), ca.vec(force))
-        nlp = {"x": z, "f": t_f, "g": ca.vertcat(equal, unequal)}
-        self.solver = ca.nlpsol("solver", "ipopt", nlp, {**IPOPT, "ipopt.max_cpu_time": limit_s})
+        nlp = {"x": z, "p": shape, "f": t_f, "g": ca.vertcat(equal, unequal)}
+        options = {**IPOPT, "ipopt.max_cpu_time": limit_s}
+        self.cold = ca.nlpsol("cold", "ipopt", nlp, options)
+        self.warm = ca.nlpsol("warm", "ipopt", nlp, {**options, **WARM})
         self.bounds()
 
     def bounds(self):
         free = 6 * (self.n + 1) + (6 + 3) * self.n * DEGREE
-        lower, upper = [1e-2, -1e3, -1e3], [1e3, 1e3, 1e3]
+        lower, upper = [0.0, 0.0, -1e3], [0.0, 0.0, 1e3]
         for limit, _ in self.limits:
             lower += [-limit / SPEED_UNIT_KM_S] * 3
             upper += [limit / SPEED_UNIT_KM_S] * 3
         self.lower, self.upper = lower + [-10.0] * free, upper + [10.0] * free
 
-    def solve(self, guess):
-        """One local solve; None when IPOPT does not report success.
+    def solve(self, guess, shape=1.0, warm=False):
+        """One local solve; None when IPOPT does not report success. warm: the guess is close, stay near it.
 
         guess: dict with t_f, anomaly (2), leave, meet, path(fractions) -> 9 rows, and window: the departure anomaly may
         move by this much [rad] only (left out: anywhere).
         """
         reach = guess.get("window", 1e3)
+        # Without a fence the time of a bad guess can collapse to nothing, where IPOPT spends its iterations for nothing.
+        self.lower[0], self.upper[0] = 0.3 * guess["t_f"], 4.0 * guess["t_f"]
         self.lower[1], self.upper[1] = guess["anomaly"][0] - reach, guess["anomaly"][0] + reach
         at_inner = guess["path"](self.s_inner)
         z0 = np.concatenate(
@@ -145,14 +154,16 @@ class Transcription:
             ]
         )
         clock = time.process_time()
-        out = self.solver(
+        solver = self.warm if warm else self.cold
+        out = solver(
             x0=z0,
+            p=shape,
             lbx=self.lower,
             ubx=self.upper,
             lbg=[0.0] * self.n_equal + [-100.0] * self.n_unequal,
             ubg=[0.0] * (self.n_equal + self.n_unequal),
         )
-        if not self.solver.stats()["success"]:
+        if not solver.stats()["success"]:
             return None
         z = np.array(out["x"]).ravel()
         k = 9 + 6 * (self.n + 1)
@@ -167,7 +178,6 @@ class Transcription:
         return {
             "t_f": float(z[0]),
             "anomaly": z[1:3],
-            "at_window_edge": bool(abs(z[1] - guess["anomaly"][0]) > reach - 1e-6),
             "leave": z[3:6],
             "meet": z[6:9],
             # Multiplier of the start condition: the first costate scaled to a Hamiltonian of +1 (seed of a shooting).
@@ -216,7 +226,7 @@ def refine(problem, flight):
     count = max(40, math.ceil(abs(flight["longitude_swept"]) / (2 * math.pi) * 24))
     cpu_s = 0.0
     for _ in range(3):
-        finer = Transcription(problem, refined_mesh(flight, count)).solve(as_guess(flight))
+        finer = Transcription(problem, refined_mesh(flight, count)).solve(as_guess(flight), warm=True)
         if finer is None:
             return None
         finer["halved_mesh_change"] = finer["t_f"] / flight["t_f"] - 1.0

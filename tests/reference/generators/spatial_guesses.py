@@ -60,8 +60,8 @@ def lifted(flight, longitude):
     return path, float(theta[-1])
 
 
-def orbit_guesses(problem, plane, longitudes, window):
-    """A coplanar flight (`plane`) laid from points all round the orbit, departure held within `window` [rad] of each."""
+def orbit_guesses(problem, plane, longitudes):
+    """A coplanar flight (`plane`) laid from points all round the orbit."""
     _, _, _, _, arg, node = elements.elements_at("earth", 0.0)
     _, _, _, _, arg_target, node_target = elements.elements_at(problem.target, 0.0)
     for k in range(longitudes):
@@ -73,7 +73,6 @@ def orbit_guesses(problem, plane, longitudes, window):
                 "t_f": plane["t_f"],
                 "anomaly": np.array([longitude - arg - node, arrival - arg_target - node_target]),
                 "path": path,
-                "window": window,
             },
         )
 

@@ -1,11 +1,14 @@
 // The page's side of the engine: checks at once, solves in a worker, and the newest question wins.
-import { answer, openCore, type Checked, type Core, type DrawnStudy, type Figures } from "./core";
+import { answer, openCore, refusal, type Checked, type Core, type Figures } from "./core";
 import type { Job, Pool } from "./pool";
 import type { Outcome, Solved } from "./protocol";
-import type { CheckRow } from "./report";
+import type { CheckRow, LinkError } from "./report";
 
 /** A question still running after this is dropped for a newer one, ms. */
 const PATIENCE_MS = 400;
+
+/** How a call on this thread ended. */
+export type Attempt<T> = { is: "done"; value: T } | { is: "refused"; errors: LinkError[] } | { is: "crashed" };
 
 type Answered = (link: string, outcome: Outcome) => void;
 
@@ -42,21 +45,24 @@ export class Client {
 
   /** Pictures of one flight; undefined when the core failed on it, after which a fresh core stands ready. */
   figures(solved: Solved): Figures | undefined {
-    return this.guard(() => new this.core.Figures(solved.report, solved.columns));
-  }
-
-  /** Draws a study; undefined when the core failed on it. */
-  drawStudy(draw: (core: Core) => DrawnStudy): DrawnStudy | undefined {
-    return this.guard(() => draw(this.core));
+    return this.guard((core) => new core.Figures(solved.report, solved.columns));
   }
 
   /** Runs a call that may trap; undefined when it did, after which a fresh core stands ready. */
-  guard<T>(call: () => T): T | undefined {
+  guard<T>(call: (core: Core) => T): T | undefined {
+    const attempt = this.attempt(call);
+    return attempt.is === "done" ? attempt.value : undefined;
+  }
+
+  /** The same, telling a refusal from a trap. */
+  attempt<T>(call: (core: Core) => T): Attempt<T> {
     try {
-      return call();
-    } catch {
+      return { is: "done", value: call(this.core) };
+    } catch (error) {
+      const errors = refusal(error);
+      if (errors) return { is: "refused", errors };
       this.core = this.open(this.module);
-      return undefined;
+      return { is: "crashed" };
     }
   }
 

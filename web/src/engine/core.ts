@@ -1,8 +1,7 @@
 // The compiled core behind typed calls, and the one place that tells wrong input from a crash.
 import { openGlue } from "../../pkg/glue";
-import { evaluate } from "./dates";
-import type { Outcome, Question, Solved } from "./protocol";
-import type { CheckRow, Example, KeyInfo, LinkError, Program, Report } from "./report";
+import type { Outcome, Question, Solved, StudyItem, StudyName, StudyPoint } from "./protocol";
+import type { CheckRow, Example, KeyInfo, LinkError, Program, Report, StudyReport } from "./report";
 
 /** What a scenario text says: `entries` hold every key's value, of the default scenario if it does not decode. */
 export interface Checked {
@@ -56,33 +55,6 @@ export interface FigurePanel {
   center_y: number | null;
 }
 
-/** A study of departure dates, as its figure takes it. */
-export interface Departures {
-  start: string;
-  span_d: number;
-  step_d: number;
-  ends: string;
-  rows: {
-    depart: string;
-    depart_d: number;
-    time_d: number | null;
-    arrive: string | null;
-    breaks_law: boolean;
-    best: boolean;
-    earliest: boolean;
-  }[];
-}
-
-/** A study over dates and accelerations, as its figure takes it. */
-export interface DepartureMap {
-  start: string;
-  step_d: number;
-  dates: number;
-  ac_mm_s2: number[];
-  ends: string;
-  cells: { date: number; ac: number; time_d: number | null; breaks_law: boolean; best: boolean }[];
-}
-
 export interface DrawnStudy {
   panels: FigurePanel[];
   words: string;
@@ -104,8 +76,11 @@ export interface Core {
   default_link(): string;
   examples(): Example[];
   theme_tokens(theme: Theme): Record<string, string>;
-  draw_departures(canvas: HTMLCanvasElement, study: Departures, options: FigureOptions): DrawnStudy;
-  draw_departure_map(canvas: HTMLCanvasElement, study: DepartureMap, options: FigureOptions): DrawnStudy;
+  study_items(name: StudyName, link: string): { link: string; items: StudyItem[] };
+  study_evaluate(name: StudyName, link: string, item: StudyItem): StudyPoint[];
+  study_mends(name: StudyName, link: string, points: StudyPoint[]): StudyItem[];
+  study_report(name: StudyName, link: string, points: StudyPoint[]): StudyReport;
+  draw_study(canvas: HTMLCanvasElement, study: StudyReport, options: FigureOptions): DrawnStudy;
   Figures: new (report: Report, columns: Float64Array) => Figures;
 }
 
@@ -117,16 +92,22 @@ export function openCore(module: WebAssembly.Module): Core {
 }
 
 /** Answers one question and never throws. */
-export function answer(core: Pick<Core, "solve" | "published_checks">, question: Question): Outcome {
+export function answer(core: Pick<Core, "solve" | "published_checks" | "study_evaluate">, question: Question): Outcome {
   try {
-    if (question.ask === "study") return { is: "rows", rows: evaluate(core, question.plan, question.chunk) };
+    if (question.ask === "study") return { is: "points", points: core.study_evaluate(question.name, question.link, question.item) };
     if (question.ask === "checks") return { is: "checked", checks: core.published_checks() };
     const start = performance.now();
     const solved = core.solve(question.link);
     return { is: "solved", solved, took_ms: performance.now() - start };
   } catch (error) {
-    const detail = (error as { detail?: { kind?: string; errors?: LinkError[] } }).detail;
-    if (detail?.kind === "input" && detail.errors) return { is: "refused", errors: detail.errors };
+    const errors = refusal(error);
+    if (errors) return { is: "refused", errors };
     return { is: "crashed", message: error instanceof Error ? error.message : String(error) };
   }
+}
+
+/** What is wrong with the input, if that is what the core complained of. */
+export function refusal(error: unknown): LinkError[] | undefined {
+  const detail = (error as { detail?: { kind?: string; errors?: LinkError[] } }).detail;
+  return detail?.kind === "input" ? detail.errors : undefined;
 }

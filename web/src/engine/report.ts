@@ -60,6 +60,7 @@ export interface Flight {
   sail_dv_km_s: number | null;
   lead_angle_deg: number | null;
   earth_range_max_au: number | null;
+  earth_view: EarthView | null;
   final_eccentricity: number | null;
   estimate: number | null;
   proof: Proof;
@@ -84,6 +85,37 @@ export interface Impulsive {
   from_parking_note: string | null;
   lead_angle_deg: number;
   synodic_d: number | null;
+  dated: DatedTransfer | null;
+  dated_same_dates: DatedTransfer | null;
+}
+
+/** A transfer of two impulses on calendar dates. */
+export interface DatedTransfer {
+  depart: string;
+  arrive: string;
+  time_d: number;
+  dv_depart_km_s: number;
+  dv_arrive_km_s: number;
+  dv_total_km_s: number;
+  c3_km2_s2: number;
+  vinf_arrive_km_s: number;
+  propellant_fraction: number;
+  delivered_kg: number | null;
+  revolutions: number;
+  direction: "prograde" | "retrograde";
+  phase_depart_deg: number | null;
+  span: string;
+  phases: string;
+}
+
+/** A dated flight as seen from the Earth, and how the bodies stand. */
+export interface EarthView {
+  range_max_au: number;
+  range_arrive_au: number;
+  light_time_max_s: number;
+  sun_earth_craft_min_deg: number | null;
+  phase_depart_deg: number;
+  phase_arrive_deg: number;
 }
 
 export interface Program {
@@ -140,4 +172,49 @@ export interface Example {
   name: string;
   link: string;
   about: string;
+}
+
+/** One flight of a study. */
+export interface StudyRow {
+  depart: string;
+  ac_mm_s2: number;
+  area_m2: number | null;
+  status: Status;
+  time_d: number | null;
+  arrive: string | null;
+  revolutions: number | null;
+  branches: number;
+  law: "kept" | "broken" | "not_tested";
+  link: string;
+}
+
+/** A departure worth looking at. */
+export interface Pick {
+  kind: "shortest" | "earliest";
+  depart: string;
+  ac_mm_s2: number;
+  time_d: number | null;
+  arrive: string | null;
+  at_edge: boolean;
+  leave_by: string;
+  slips: { slip_d: number; arrive_later_d: number; time_change_d: number }[];
+  link: string;
+}
+
+export interface StudyAxis {
+  field: string;
+  label: string;
+  unit: string;
+  values: (number | string)[];
+}
+
+/** A study as far as it has come; dates vary fastest along the rows. */
+export interface StudyReport {
+  study: string;
+  link: string;
+  program: Program;
+  axes: StudyAxis[];
+  rows: StudyRow[];
+  best: Pick[];
+  notes: string[];
 }

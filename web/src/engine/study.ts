@@ -1,47 +1,61 @@
-// A study run over a pool of workers: fixed chunks in a fixed order, so that the number of workers changes no digit.
+// A study run over a pool of workers. Its items are the same however many workers there are, and so is the result.
 import { Cell } from "../cell";
 import type { Job, Pool } from "./pool";
+import type { StudyItem, StudyName, StudyPoint } from "./protocol";
 import type { LinkError } from "./report";
-import type { StudyPlan, StudyRow } from "./protocol";
 
-/** A chunk whose worker crashed is tried once more. */
+/** An item whose worker crashed is tried once more. */
 const TRIES = 2;
 
 export interface Progress {
   is: "running" | "stopped" | "finished" | "refused";
-  /** Chunks that are there, and how many there are. */
   done: number;
-  chunks: number;
-  /** Estimate, s; null before the first chunk and when nothing runs. */
+  items: number;
+  /** Estimate, s; null before the first item and when nothing runs. */
   left_s: number | null;
-  /** Chunks given up after crashes. */
+  /** Items given up after crashes. */
   lost: number;
   errors: LinkError[];
 }
 
+export interface Plan {
+  name: StudyName;
+  /** Canonical, with the study's keys. */
+  link: string;
+  items: StudyItem[];
+}
+
+interface Task {
+  item: StudyItem;
+  points: StudyPoint[] | null;
+  tries: number;
+  job: Job | null;
+}
+
 export class StudyRun {
   readonly progress: Cell<Progress>;
-  private readonly chunks: (StudyRow[] | null)[];
-  private readonly tries: number[];
-  private readonly running = new Map<number, Job>();
+  private tasks: Task[];
+  /** Whether the items to evaluate again have joined. */
+  private mended = false;
   private is: Progress["is"] = "stopped";
   private errors: LinkError[] = [];
   private started_ms = 0;
   private doneAtStart = 0;
 
   constructor(
-    readonly plan: StudyPlan,
+    readonly plan: Plan,
     private readonly pool: Pick<Pool, "run">,
+    /** Items to evaluate again, given all points of the first evaluation. */
+    private readonly mend: (points: StudyPoint[]) => StudyItem[],
     private readonly now_ms: () => number = () => performance.now(),
   ) {
-    this.chunks = Array.from({ length: plan.chunks }, () => null);
-    this.tries = this.chunks.map(() => 0);
+    this.tasks = plan.items.map(fresh);
     this.progress = new Cell(this.told());
   }
 
   /** Starts, or goes on where it was stopped. */
   start(): void {
-    if (this.is === "running" || this.is === "finished") return;
+    if (this.is !== "stopped") return;
     this.is = "running";
     this.started_ms = this.now_ms();
     this.doneAtStart = this.done();
@@ -51,58 +65,71 @@ export class StudyRun {
   /** Ends what runs; what is there stays. */
   stop(): void {
     if (this.is !== "running") return;
-    for (const job of this.running.values()) job.discard();
-    this.running.clear();
-    this.is = "stopped";
+    this.end("stopped");
+  }
+
+  /** What is there so far, in the order of the items. */
+  points(): StudyPoint[] {
+    return this.tasks.flatMap((task) => task.points ?? []);
+  }
+
+  private end(is: Progress["is"]): void {
+    for (const task of this.tasks) {
+      if (!task.job) continue;
+      task.job.discard();
+      task.job = null;
+      task.tries--;
+    }
+    this.is = is;
     this.progress.set(this.told());
   }
 
-  /** What is there so far, chunk by chunk. */
-  rows(): readonly (readonly StudyRow[] | null)[] {
-    return this.chunks;
-  }
-
   private next(): void {
-    for (let chunk = 0; chunk < this.chunks.length; chunk++) {
-      if (this.chunks[chunk] !== null || this.running.has(chunk) || (this.tries[chunk] ?? 0) >= TRIES) continue;
-      const job = this.pool.run({ ask: "study", plan: this.plan, chunk });
+    for (const task of this.tasks) {
+      if (task.points || task.job || task.tries >= TRIES) continue;
+      const job = this.pool.run({ ask: "study", name: this.plan.name, link: this.plan.link, item: task.item });
       if (!job) break;
-      this.tries[chunk] = (this.tries[chunk] ?? 0) + 1;
-      this.running.set(chunk, job);
+      task.tries++;
+      task.job = job;
       void job.done.then((outcome) => {
-        if (this.running.get(chunk) !== job) return;
-        this.running.delete(chunk);
-        if (outcome.is === "rows") this.chunks[chunk] = outcome.rows;
-        else if (outcome.is === "refused") {
-          this.stop();
-          this.is = "refused";
+        if (task.job !== job) return;
+        task.job = null;
+        if (outcome.is === "points") task.points = outcome.points;
+        if (outcome.is === "refused") {
           this.errors = outcome.errors;
-          this.progress.set(this.told());
-          return;
-        }
-        this.next();
+          this.end("refused");
+        } else this.next();
       });
     }
-    if (this.running.size === 0 && this.chunks.every((rows, i) => rows !== null || (this.tries[i] ?? 0) >= TRIES)) this.is = "finished";
+    if (this.tasks.every((task) => task.points || (!task.job && task.tries >= TRIES))) {
+      const more = this.mended ? [] : this.mend(this.points());
+      this.mended = true;
+      this.tasks = [...this.tasks, ...more.map(fresh)];
+      if (more.length > 0) return this.next();
+      this.is = "finished";
+    }
     this.progress.set(this.told());
   }
 
   private done(): number {
-    return this.chunks.filter((rows) => rows !== null).length;
+    return this.tasks.filter((task) => task.points).length;
   }
 
   private told(): Progress {
-    const done = this.done();
+    const [done, items] = [this.done(), this.tasks.length];
     const since = done - this.doneAtStart;
     const took_s = (this.now_ms() - this.started_ms) / 1000;
-    const lost = this.chunks.filter((rows, i) => rows === null && !this.running.has(i) && (this.tries[i] ?? 0) >= TRIES).length;
     return {
       is: this.is,
       done,
-      chunks: this.chunks.length,
-      left_s: this.is === "running" && since > 0 ? (took_s / since) * (this.chunks.length - done) : null,
-      lost,
+      items,
+      left_s: this.is === "running" && since > 0 ? (took_s / since) * (items - done) : null,
+      lost: this.tasks.filter((task) => !task.points && !task.job && task.tries >= TRIES).length,
       errors: this.errors,
     };
   }
+}
+
+function fresh(item: StudyItem): Task {
+  return { item, points: null, tries: 0, job: null };
 }

@@ -1,14 +1,27 @@
 // What the flight assumes, and how large each assumption is.
 import { h, part, table } from "../dom";
+import { valueOf } from "../link";
+import type { Page } from "./page";
 
-const ASSUMPTIONS: readonly (readonly [string, string])[] = [
+type Assumption = readonly [string, string];
+
+const CIRCLES: Assumption = [
+  "Circular orbits in one plane",
+  "Each planet moves on a circle of its semi-major axis. Mars really ranges 9 % to either side of its circle and Mercury 21 %; planes differ by up to 7.0° (Mercury). No dates and no phases, so a flight matches an orbit, not a body.",
+];
+
+const ORBITS: readonly Assumption[] = [
+  [
+    "Planets on mean elements with rates",
+    "Fitted for 1800 to 2050, ecliptic and equinox of J2000; arrivals after 2050 carry a caution. The Earth stands for the Earth–Moon barycentre: 4 700 km from the Earth's centre.",
+  ],
+  ["An orbit to be matched is frozen at departure", "Elements at the departure date, J2000 without one; a body to be met moves on, with the elements of its arrival date."],
+];
+
+const ASSUMPTIONS: readonly Assumption[] = [
   [
     "Two-body motion: only the Sun pulls",
     "At 1 mm/s² the Earth pulls as hard as the sail out to 0.6 million km, a matter of days at either end; other planets matter only when passed closely.",
-  ],
-  [
-    "Circular orbits in one plane",
-    "Each planet moves on a circle of its semi-major axis. Mars really ranges 9 % to either side of its circle and Mercury 21 %; planes differ by up to 7.0° (Mercury). No dates and no phases, so a flight matches an orbit, not a body.",
   ],
   [
     "The Sun as a point source",
@@ -28,14 +41,23 @@ const ASSUMPTIONS: readonly (readonly [string, string])[] = [
   ["Time scale TDB", "About 69 s ahead of UTC."],
 ];
 
-export function mountAssumptions(): void {
-  part("assumptions").append(
-    h("h2", { id: "assumptions-title" }, "Assumptions and their size"),
-    table(
-      "Assumptions and their size",
-      ["assumed", "how much it matters"],
-      ASSUMPTIONS.map(([name, size]) => h("tr", {}, h("th", { scope: "row" }, name), h("td", { class: "words" }, size))),
-      "prose",
-    ),
-  );
+export function mountAssumptions({ state }: Page): void {
+  const body = h("div");
+  part("assumptions").append(h("h2", { id: "assumptions-title" }, "Assumptions and their size"), body);
+  let listed: boolean | undefined;
+  state.shown.watch((shown) => {
+    const spatial = valueOf(shown?.link ?? "", "geometry") === "spatial";
+    if (spatial === listed) return;
+    listed = spatial;
+    const [first, ...rest] = ASSUMPTIONS;
+    const all = [...(first ? [first] : []), ...(spatial ? ORBITS : [CIRCLES]), ...rest];
+    body.replaceChildren(
+      table(
+        "Assumptions and their size",
+        ["assumed", "how much it matters"],
+        all.map(([name, size]) => h("tr", {}, h("th", { scope: "row" }, name), h("td", { class: "words" }, size))),
+        "prose",
+      ),
+    );
+  });
 }

@@ -1,59 +1,85 @@
-// When to leave: flights on a row of dates, computed by workers as one looks on, as a curve or as a map.
+// When to leave: flights on a row of dates, computed by workers as one looks on, as curves or as a map.
 import { CONTROLS } from "../controls";
-import { h, part, table } from "../dom";
-import { collect, plan, type Told } from "../engine/dates";
+import { h, part } from "../dom";
+import type { FigurePanel } from "../engine/core";
 import type { StudyName } from "../engine/protocol";
+import type { StudyReport, StudyRow } from "../engine/report";
 import { StudyRun, type Progress } from "../engine/study";
 import { field } from "../field";
 import { Figure, place, token } from "../figure";
-import { NONE, fixed, significant } from "../format";
-import { valueOf } from "../link";
+import { fixed, significant, typed } from "../format";
 import type { Shown } from "../state";
+import { Picks, RowTable, dayOf, wordsOf } from "../study-tables";
 import type { Page } from "./page";
 
 /** A row and the flight that it opens are the same flight within this, relative. */
 const AGREES = 1e-8;
 /** The pointer finds a point from this far, CSS pixels. */
 const REACH_PX = 22;
-/** Pause between two renewals of the table while rows come in, ms. */
-const LISTED_MS = 250;
+/** Pause between two pictures of a study that runs, ms. */
+const SHOWN_MS = 250;
+
+/** The study's keys under their headings. */
+const GROUPS: readonly (readonly [string, readonly string[]])[] = [
+  ["Dates", ["span", "step_d"]],
+  ["Sails of the map, by acceleration", ["ac_range"]],
+  ["Or by area, at the mass given", ["area_range"]],
+];
+
+const WORDS: Record<Progress["is"], string> = { running: "working", stopped: "stopped", finished: "finished", refused: "refused" };
 
 export function mountDepartures({ state, client, studies }: Page): void {
   let run: StudyRun | undefined;
-  let rows: Told[] = [];
-  let base = "";
-  let marked: Told | undefined;
-  let opened: Told | undefined;
+  let report: StudyReport | undefined;
+  let marked: StudyRow | undefined;
+  let opened: StudyRow | undefined;
+  let timer: ReturnType<typeof setTimeout> | undefined;
 
   const infos = new Map(client.about.link_keys().map((info) => [info.key, info]));
-  const fields = CONTROLS.filter((control) => control.group === "departures").map((control) => field(state, control, infos.get(control.key)));
+  const fields = GROUPS.map(([legend, keys]) => {
+    const inside = CONTROLS.filter((control) => keys.includes(control.piece?.key ?? control.key));
+    return h("fieldset", { class: "elements" }, h("legend", {}, legend), ...inside.map((control) => field(state, control, infos.get(control.key))));
+  });
+  const begin = (name: StudyName) => {
+    const link = state.verdict.get().link;
+    if (link === null) return;
+    const planned = client.attempt((core) => ({ name, ...core.study_items(name, link) }));
+    if (planned.is === "refused") return refuse(planned.errors);
+    if (planned.is !== "done") return;
+    run?.stop();
+    opened = marked = undefined;
+    agreement.hidden = true;
+    const plan = planned.value;
+    const mine = new StudyRun(plan, studies, (points) => client.guard((core) => core.study_mends(name, plan.link, points)) ?? []);
+    run = mine;
+    mine.progress.watch((progress) => run === mine && tell(progress));
+    mine.start();
+  };
   const dates = h("button", { type: "button", onclick: () => begin("dates") }, "Sweep the dates");
-  const map = h("button", { type: "button", onclick: () => begin("map") }, "Map dates and accelerations");
+  const map = h("button", { type: "button", onclick: () => begin("map") }, "Map dates and sails");
   const stop = h("button", { type: "button", onclick: () => run?.stop() }, "Stop");
   const resume = h("button", { type: "button", onclick: () => run?.start() }, "Go on");
-  const bar = h("progress", { "aria-label": "Dates computed", max: 1, value: 0 });
-  const said = h("p", { class: "help" });
-  const spoken = h("p", { class: "unseen", role: "status" });
+  const bar = h("progress", { "aria-label": "Flights computed", max: 1, value: 0 });
   const working = h("div", { class: "working", hidden: true }, bar, stop, resume);
-  const verdict = h("p", { class: "note", role: "status", hidden: true });
-  const chosen = h("select", { id: "departures-ac", onchange: () => run && list(run) });
-  const choice = h("p", { class: "entry", hidden: true }, h("label", { for: "departures-ac" }, "Listed at"), chosen, h("span", { class: "unit" }, "mm/s²"));
-  const framed = h("div");
-  const beside = h("div", { class: "beside" }, choice, framed);
-  let listing: ReturnType<typeof setTimeout> | undefined;
-  let begun: StudyRun | undefined;
+  const said = h("p", { class: "help", id: "departures-said" });
+  const spoken = h("p", { class: "unseen", role: "status" });
+  const refused = h("div", { class: "errors" });
+  const agreement = h("p", { class: "note", id: "departures-agreement", role: "status", hidden: true });
+  const notes = h("ul", { class: "help" });
+  const rows = new RowTable((row) => open(row));
+  const picks = new Picks((row) => open(row));
 
   const figure = new Figure(state, {
     name: "departures",
-    height: (width) => (run?.plan.name === "map" ? Math.min(520, 140 + 16 * run.plan.ac_mm_s2.length) : width < 500 ? 420 : 460),
+    height: (width) => (isMap() ? Math.min(520, 120 + 20 * sails().length) : width < 500 ? 400 : 460),
     stale: () => {
       const link = state.verdict.get().link ?? "";
-      return base !== baseOf(link) && (!opened || flightOf(link) !== flightOf(opened.link));
+      return baseOf(report?.link ?? "", isMap()) !== baseOf(link, isMap()) && (!opened || flightOf(link) !== flightOf(opened.link));
     },
     overlay: (context, panels) => {
       for (const row of [opened, marked])
-        for (const panel of panels) {
-          const [left, top] = row ? spot(row, panel) : [Number.NaN, Number.NaN];
+        for (const panel of row ? panels : []) {
+          const [left, top] = spot(row as StudyRow, panel);
           if (!Number.isFinite(top)) continue;
           context.strokeStyle = token("ink");
           context.lineWidth = row === opened ? 2.5 : 1.5;
@@ -63,135 +89,91 @@ export function mountDepartures({ state, client, studies }: Page): void {
         }
     },
   });
-  const spot = (row: Told, panel: (typeof figure.panels)[number]): [number, number] => {
-    if (panel.column === "ac") return place(panel, row.depart_d, row.ac);
-    return place(panel, row.depart_d, row.time_d === null ? Number.NaN : panel.column === "time_d" ? row.time_d : row.depart_d + row.time_d);
+  const isMap = () => report?.study === "map";
+  const sails = () => (report?.axes[1]?.values ?? []) as number[];
+  const spot = (row: StudyRow, panel: FigurePanel): [number, number] => {
+    const day = dayOf(row.depart) - dayOf(String(report?.axes[0]?.values[0] ?? ""));
+    if (panel.column === "time_d") return place(panel, day, row.time_d ?? Number.NaN);
+    if (panel.column === "arrive_d") return place(panel, day, day + (row.time_d ?? Number.NaN));
+    return place(panel, day, sails().indexOf((panel.column === "area_m2" ? row.area_m2 : row.ac_mm_s2) ?? Number.NaN));
   };
-  const nearest = (event: PointerEvent): Told | undefined => {
+  const nearest = (event: PointerEvent): StudyRow | undefined => {
     const bounds = figure.frame.getBoundingClientRect();
     const [left, top] = [event.clientX - bounds.left, event.clientY - bounds.top];
-    let [best, found]: [number, Told | undefined] = [REACH_PX, undefined];
+    let [best, found]: [number, StudyRow | undefined] = [REACH_PX, undefined];
     for (const panel of figure.panels)
-      for (const row of rows) {
+      for (const row of report?.rows ?? []) {
         const [x, y] = spot(row, panel);
         const distance = Math.hypot(x - left, y - top);
         if (distance < best) [best, found] = [distance, row];
       }
     return found;
   };
+  const mark = (row: StudyRow | undefined) => {
+    if (row === marked) return;
+    marked = row;
+    figure.frame.title = row ? `${wordsOf(row)}${isMap() ? ` at ${significant(row.ac_mm_s2, 3)} mm/s²` : ""}` : "";
+    figure.redrawOverlay();
+  };
   figure.frame.addEventListener("pointermove", (event) => mark(nearest(event)));
   figure.frame.addEventListener("pointerleave", () => mark(undefined));
   figure.frame.addEventListener("click", (event) => {
     const row = nearest(event as PointerEvent);
-    if (row) openRow(row);
+    if (row) open(row);
   });
-  const mark = (row: Told | undefined) => {
-    if (row === marked) return;
-    marked = row;
-    figure.frame.title = row ? wordsOf(row) : "";
-    figure.redrawOverlay();
-  };
 
-  function begin(name: StudyName): void {
-    offer();
-    const { texts } = state.scenario.get();
-    const link = state.verdict.get().link;
-    if (link === null) return;
-    run?.stop();
-    const [low, high, count] = ["ac_range_low", "ac_range_high", "ac_range_count"].map((key) => Number(texts[key]));
-    const ac_mm_s2 = Array.from({ length: count ?? 0 }, (_, i) => (low ?? 0) + ((high ?? 0) - (low ?? 0)) * (i / Math.max(1, (count ?? 0) - 1)));
-    const asked = { name, link, first: texts.span_first ?? "", last: texts.span_last ?? "", step_d: Number(texts.step_d), ac_mm_s2 };
-    base = baseOf(link);
-    opened = marked = undefined;
-    verdict.hidden = true;
-    const mine = new StudyRun(plan(asked), studies);
-    run = mine;
-    mine.progress.watch((progress) => {
-      if (run === mine) tell(mine, progress);
-    });
-    mine.start();
-  }
+  const refuse = (errors: Progress["errors"]) =>
+    refused.replaceChildren(...errors.map(({ key, value, rule }) => h("p", {}, h("code", {}, key), value === "" ? ": " : ` \u201c${typed(value)}\u201d: `, rule)));
 
-  /** Fills the fields that are still empty: one synodic period from the departure date on. */
-  function offer(): void {
-    const { texts } = state.scenario.get();
-    const report = state.shown.get()?.solved.report;
-    const first = texts.span_first || texts.depart || "2030-01-01";
-    const days = Math.min(1500, report?.impulsive.synodic_d ?? 800);
-    const last = new Date(Date.parse(`${first}T00:00:00Z`) + days * 86_400_000);
-    const offers: Record<string, string> = {
-      span_first: first,
-      span_last: Number.isNaN(last.getTime()) ? "" : last.toISOString().slice(0, 10),
-      step_d: "10",
-      ac_range_low: "0.5",
-      ac_range_high: "3",
-      ac_range_count: "11",
-    };
-    for (const [key, text] of Object.entries(offers)) if (!texts[key]) state.edit(key, text);
-  }
-
-  function tell(mine: StudyRun, progress: Progress): void {
-    rows = collect(mine.plan, mine.rows());
+  function tell(progress: Progress): void {
+    refuse(progress.errors);
     working.hidden = false;
-    bar.max = progress.chunks;
+    bar.max = progress.items;
     bar.value = progress.done;
     stop.hidden = progress.is !== "running";
     resume.hidden = progress.is !== "stopped";
-    const all = mine.plan.dates * mine.plan.ac_mm_s2.length;
-    const left = progress.left_s === null ? "" : `, about ${fixed(Math.ceil(progress.left_s), 0)} s left`;
-    const state_words = { running: `working${left}`, stopped: "stopped", finished: "finished", refused: "refused" }[progress.is];
-    said.textContent = `${rows.length} of ${all} flights, ${state_words}${progress.lost > 0 ? `; ${progress.lost} parts given up after a crash` : ""}.`;
-    if (progress.is !== "running") spoken.textContent = said.textContent;
-    show(mine);
+    if (progress.is !== "running") {
+      clearTimeout(timer);
+      timer = undefined;
+      show(progress);
+      spoken.textContent = said.textContent;
+    } else if (timer === undefined) {
+      timer = setTimeout(() => {
+        timer = undefined;
+        if (run) show(run.progress.get());
+      }, SHOWN_MS);
+    }
   }
 
-  function show(mine: StudyRun): void {
-    const { start, step_d, dates, ac_mm_s2, name } = mine.plan;
-    const ends = state.shown.get()?.solved.report.ends;
-    const words = ends ? `${ends.from.name} to ${ends.to.name}` : "";
-    let description = "";
+  function show(progress: Progress): void {
+    const mine = run;
+    if (!mine) return;
+    const { name, link } = mine.plan;
+    const told = client.guard((core) => core.study_report(name, link, mine.points()));
+    if (!told) return;
+    report = told;
+    const all = told.axes.reduce((product, axis) => product * axis.values.length, 1);
+    const left = progress.left_s === null ? "" : `, about ${fixed(Math.ceil(progress.left_s), 0)} s left`;
+    const lost = progress.lost > 0 ? `; ${progress.lost} parts given up after a crash` : "";
+    said.textContent = `${told.rows.length} of ${all} flights, ${WORDS[progress.is]}${left}${lost}.`;
     figure.show({
-      words: () => description,
+      words: () => "",
       draw: (canvas, options) => {
-        const drawn = client.drawStudy((core) =>
-          name === "map"
-            ? core.draw_departure_map(canvas, { start, step_d, dates, ac_mm_s2, ends: words, cells: rows }, options)
-            : core.draw_departures(canvas, { start, step_d, span_d: step_d * (dates - 1), ends: words, rows }, options),
-        );
-        description = drawn?.words ?? "";
-        figure.say(description);
+        const drawn = client.guard((core) => core.draw_study(canvas, told, options));
+        figure.say(drawn?.words ?? "");
         return drawn?.panels;
       },
     });
-    list(mine);
+    rows.show(told);
+    picks.show(told);
+    notes.replaceChildren(...told.notes.map((note) => h("li", {}, note)));
   }
 
-  /** The table lists one acceleration at a time; while rows pour in it is renewed a few times a second. */
-  const list = (mine: StudyRun) => {
-    if (listing !== undefined) return;
-    listing = setTimeout(
-      () => {
-        listing = undefined;
-        if (run !== mine) return;
-        const accelerations = mine.plan.ac_mm_s2;
-        if (chosen.options.length !== accelerations.length || begun !== mine) {
-          chosen.replaceChildren(...accelerations.map((ac, i) => h("option", { value: i }, significant(ac, 3))));
-          begun = mine;
-        }
-        choice.hidden = accelerations.length < 2;
-        const scroll = framed.querySelector(".frame")?.scrollTop ?? 0;
-        framed.replaceChildren(listed(rows.filter((row) => row.ac === Number(chosen.value)), openRow));
-        const frame = framed.querySelector(".frame");
-        if (frame) frame.scrollTop = scroll;
-      },
-      mine.progress.get().is === "running" ? LISTED_MS : 0,
-    );
-  };
-
-  function openRow(row: Told): void {
+  function open(row: StudyRow): void {
     opened = row;
-    verdict.hidden = false;
-    verdict.textContent = `Opening the flight of ${row.depart}…`;
+    agreement.hidden = false;
+    agreement.className = "note";
+    agreement.textContent = `Opening the flight of ${row.depart}…`;
     figure.redrawOverlay();
     state.load(client.check(row.link), ["departures"]);
     compare(state.shown.get());
@@ -201,14 +183,16 @@ export function mountDepartures({ state, client, studies }: Page): void {
   function compare(shown: Shown | null): void {
     if (!opened || !shown || flightOf(shown.link) !== flightOf(opened.link)) return;
     const { time_d } = shown.solved.report.flight;
-    const differs = opened.time_d === null || time_d === null ? Number(opened.time_d !== time_d) : Math.abs(time_d / opened.time_d - 1);
-    verdict.className = differs <= AGREES ? "note" : "alarm";
-    verdict.textContent =
-      differs <= AGREES
-        ? `The flight of ${opened.depart} is open above and agrees with the row to ${differs === 0 ? "the last digit" : significant(differs, 1)}.`
-        : `The flight of ${opened.depart} is open above but differs from the row: ${fixed(time_d, 3)} d against ${fixed(opened.time_d, 3)} d.`;
+    const none = opened.time_d === null || time_d === null;
+    const differs = none ? Number(opened.time_d !== time_d) : Math.abs(time_d / (opened.time_d ?? 1) - 1);
+    const agrees = differs <= AGREES;
+    agreement.className = agrees ? "note" : "alarm";
+    agreement.textContent = agrees
+      ? `The flight of ${opened.depart} is open above; it agrees with the row ${differs === 0 ? "to the last digit" : `to ${significant(differs, 1)}`}.`
+      : `The flight of ${opened.depart} is open above and differs from the row: ${fixed(time_d, 3)} d there, ${fixed(opened.time_d, 3)} d here.`;
   }
   state.shown.watch(compare);
+
   const asked = h("div", { class: "study-fields" }, ...fields);
   const buttons = h("div", { class: "tools" }, dates, map);
   const dateless = h(
@@ -221,61 +205,35 @@ export function mountDepartures({ state, client, studies }: Page): void {
     const spatial = texts.geometry === "spatial";
     dateless.hidden = spatial;
     asked.hidden = buttons.hidden = !spatial;
+    refused.replaceChildren();
   });
-  state.verdict.watch(({ link }) => {
-    dates.disabled = map.disabled = link === null;
-    figure.redraw();
-  });
+  state.verdict.watch(({ link }) => (dates.disabled = map.disabled = link === null));
   part("departures").append(
     h("h2", { id: "departures-title" }, "Departures"),
     h("p", {}, "When should it leave?"),
     dateless,
     asked,
     buttons,
+    refused,
     working,
     said,
     spoken,
-    verdict,
-    h("div", { class: "study" }, figure.frame, beside),
+    agreement,
+    h("div", { class: "study" }, figure.frame, rows.element),
+    picks.element,
+    notes,
   );
 }
 
 /** A link without some of its keys. */
-function without(link: string | null, dropped: readonly string[]): string {
-  const keys = new URLSearchParams(link ?? "");
+function stripped(link: string, dropped: readonly string[]): string {
+  const keys = new URLSearchParams(link);
   for (const key of dropped) keys.delete(key);
   return String(keys);
 }
 
-/** The scenario that a study varies, and the flight that a link means whatever study it carries. */
-const STUDY_KEYS = ["span", "step_d", "ac_range"];
-const baseOf = (link: string | null) => without(link, ["depart", "title", ...STUDY_KEYS]);
-const flightOf = (link: string) => without(link, STUDY_KEYS);
-
-function wordsOf(row: Told): string {
-  const accel = valueOf(row.link, "ac_mm_s2");
-  return `${row.depart}: ${row.time_d === null ? "no flight found" : `${fixed(row.time_d, 2)} d, arriving ${row.arrive?.slice(0, 10) ?? NONE}`}${accel ? ` at ${accel} mm/s²` : ""}`;
-}
-
-function listed(rows: readonly Told[], open: (row: Told) => void): HTMLElement {
-  const marks = (row: Told) =>
-    [row.time_d === null && row.status.replace("_", " "), row.best && "best", row.earliest && "earliest", row.breaks_law && "× arrives before an earlier departure"]
-      .filter(Boolean)
-      .join(", ");
-  return table(
-    "Departures",
-    ["departure: open", "flight, d", "arrival", "turns", "remarks"],
-    rows.map((row) =>
-      h(
-        "tr",
-        { class: row.best ? "best" : "" },
-        h("th", { scope: "row" }, h("button", { type: "button", class: "plain", "aria-label": `Open the flight of ${row.depart}`, onclick: () => open(row) }, row.depart)),
-        h("td", {}, fixed(row.time_d, 2)),
-        h("td", {}, row.arrive?.slice(0, 10) ?? NONE),
-        h("td", {}, fixed(row.revolutions, 2)),
-        h("td", { class: row.breaks_law || row.time_d === null ? "words bad" : "words" }, marks(row)),
-      ),
-    ),
-    "departures",
-  );
-}
+const STUDY_KEYS = ["span", "step_d", "ac_range", "area_range"];
+/** What a study varies counts for nothing in it. */
+const baseOf = (link: string, isMap: boolean) => stripped(link, ["depart", "title", ...(isMap ? ["ac_mm_s2", "area_m2"] : [])]);
+/** The flight that a link means, whatever study it carries. */
+const flightOf = (link: string) => stripped(link, STUDY_KEYS);

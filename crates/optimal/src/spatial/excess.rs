@@ -39,7 +39,9 @@ const CAREFUL: Stride = Stride { first: 3e-3, largest: 0.3, smallest: 1e-7, budg
 /// Proven flights with up to `allowance` of excess speed, fastest first, grown out of `plain` flights of the same kind
 /// and conditions without any.
 ///
-/// Without an allowance these are `plain` itself.
+/// Their costates hold the guide of [`crate::excess`] in the place of the primer: only this module continues them. Without
+/// an allowance they are `plain` itself. Measured over 108 dates (Mars, Venus, Mercury; 0.5, 1, 2 mm/s^2; 1, 3, 5 km/s at
+/// departure, 2, 5 at arrival, 3 at both): all 1296 branches of the flights without excess lead to a proven one.
 pub fn granted(
     kind: Kind,
     conditions: &Conditions<'_>,

@@ -18,7 +18,7 @@ const TIMES_TO_AN_ORBIT: usize = 12;
 
 /// Fewest grid points along departure, along flight time, and most grid points in all.
 const DEPARTS_MIN: usize = 6;
-const TIMES_MIN: usize = 24;
+const TIMES_MIN: usize = 48;
 const POINTS_MAX: usize = 6000;
 
 /// Basins whose floor is sounded, and how many of the lowest are descended to the end.

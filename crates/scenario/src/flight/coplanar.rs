@@ -1,8 +1,10 @@
 //! Coplanar flights: circles without dates.
 
+use optimal::coplanar::excess;
 use optimal::coplanar::flight::{Flown, fly};
 use optimal::coplanar::guess;
 use optimal::coplanar::solve::{Extremum, Problem, Route, solve};
+use optimal::excess::Allowance;
 use orbits::units;
 use sail::motion::polar;
 use sail::motion::steered::{self, Ending, Law, Plan, Steered};
@@ -10,7 +12,7 @@ use sail::steering::{fixed, local};
 use sail::trajectory::{Sample, Trajectory};
 use study::deadline::lightness_needed;
 
-use super::{THERMAL, described, judged, prove, unsolved, wrapped_deg};
+use super::{THERMAL, allowance, described, judged, prove, tell_excess, unsolved, wrapped_deg};
 use crate::histories::{columns, km};
 use crate::place::circle_au;
 use crate::report::{Branch, Columns, Flight, Margin, Status};
@@ -73,12 +75,25 @@ fn nothing_to_fly(scenario: &Scenario, problem: &Problem) -> (Flight, Columns) {
     (flight, histories)
 }
 
+/// The minimum-time flight with whatever excess the scenario allows, and how it was found.
+fn solved(problem: &Problem, allowance: Allowance) -> Option<(Flown, String)> {
+    if !allowance.is_some() {
+        let solved = solve(problem)?;
+        return Some((fly(problem, &solved.unknowns)?, method(&solved)));
+    }
+    let problem = excess::Problem { circles: *problem, allowance };
+    let solved = excess::solve(&problem)?;
+    let method = "Pontryagin's principle, shooting: the flight without excess, followed while the allowance grows; \
+                  re-flown at 1e-13";
+    Some((excess::fly(&problem, &solved.unknowns)?, method.to_owned()))
+}
+
 fn fastest(scenario: &Scenario, problem: &Problem) -> (Flight, Columns) {
-    let solved = solve(problem);
-    let flown = solved.as_ref().and_then(|extremum| fly(problem, &extremum.unknowns));
-    let (Some(solved), Some(flown)) = (solved, flown) else { return not_converged(problem) };
+    let allowance = allowance(scenario);
+    let Some((flown, method)) = solved(problem, allowance) else { return not_converged(problem) };
     let Some((status, message)) = judged(&flown.evidence) else { return not_converged(problem) };
-    let mut flight = described_on_circles(problem, flown.time, &flown.trajectory, &method(&solved));
+    let mut flight = described_on_circles(problem, flown.time, &flown.trajectory, &method);
+    tell_excess(&mut flight, &flown.excess);
     flight.status = status;
     flight.message = message;
     flight.final_eccentricity = Some(flown.final_eccentricity);
@@ -89,7 +104,9 @@ fn fastest(scenario: &Scenario, problem: &Problem) -> (Flight, Columns) {
         revolutions: flown.trajectory.swept / std::f64::consts::TAU,
         best: true,
     }];
-    flight.margin = scenario.deadline_d.map(|deadline_d| margin(problem, &flown, deadline_d));
+    // How much weaker the sail could be is solved for flights that match both circles.
+    let deadline_d = scenario.deadline_d.filter(|_| !allowance.is_some());
+    flight.margin = deadline_d.map(|deadline_d| margin(problem, &flown, deadline_d));
     let histories = columns(&flown.trajectory, THERMAL);
     (flight, histories)
 }

@@ -4,11 +4,13 @@ mod coplanar;
 mod spatial;
 
 use optimal::certificate::{Evidence, Verdict};
+use optimal::excess::{Allowance, Used};
 use orbits::units;
 use sail::film::{ALUMINISED, Optics};
 use sail::temperature::film_temperature_k;
 use sail::trajectory::{Sample, Trajectory};
 
+use crate::earth;
 use crate::histories::{jumps, km, turn_rate_deg_d};
 use crate::report::{Columns, Flight, Margin, Proof, SecondOrder, Status};
 use crate::schema::{Geometry, Scenario};
@@ -18,10 +20,12 @@ const THERMAL: &Optics = &ALUMINISED;
 
 /// The flight of `scenario` at this lightness number, and its histories (empty when there is none to show).
 pub(crate) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
-    let (mut flight, columns) = match scenario.geometry {
+    let (mut flight, mut columns) = match scenario.geometry {
         Geometry::Coplanar => coplanar::flight(scenario, lightness),
         Geometry::Spatial => spatial::flight(scenario, lightness),
     };
+    flight.earth_view = earth::fill(scenario, &mut columns);
+    flight.earth_range_max_au = flight.earth_view.map(|view| view.range_max_au);
     if flight.margin.is_none() {
         flight.margin = scenario.deadline_d.zip(flight.time_d).map(|(deadline_d, time_d)| Margin {
             days_in_hand: deadline_d - time_d,
@@ -52,6 +56,7 @@ fn unsolved(status: Status, message: String, method: &str) -> Flight {
         sail_dv_km_s: None,
         lead_angle_deg: None,
         earth_range_max_au: None,
+        earth_view: None,
         final_eccentricity: None,
         estimate: None,
         proof: Proof {
@@ -113,6 +118,22 @@ fn judged(evidence: &Evidence) -> Option<(Status, Option<String>)> {
         )),
         Verdict::NotConverged => None,
     }
+}
+
+/// The excess speeds that a scenario allows, canonical.
+fn allowance(scenario: &Scenario) -> Allowance {
+    Allowance {
+        departure: units::canonical_speed(scenario.vinf_km_s),
+        arrival: units::canonical_speed(scenario.vinf_arrive_km_s),
+    }
+}
+
+/// Fills in how much of the allowance the flight uses.
+fn tell_excess(flight: &mut Flight, used: &Used) {
+    let departure_km_s = units::km_per_s(used.departure);
+    flight.vinf_used_km_s = Some(departure_km_s);
+    flight.c3_km2_s2 = Some(departure_km_s * departure_km_s);
+    flight.vinf_arrive_km_s = Some(units::km_per_s(used.arrival));
 }
 
 /// Fills in what re-flying showed.

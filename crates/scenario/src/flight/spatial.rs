@@ -5,14 +5,14 @@ use std::f64::consts::TAU;
 use optimal::spatial::curves::Setting;
 use optimal::spatial::ends::{Ends, eccentricity, ordered};
 use optimal::spatial::launch::coplanar_point;
-use optimal::spatial::polish::Conditions;
+use optimal::spatial::polish::{Conditions, Kind};
 use optimal::spatial::prove::Flown;
-use optimal::spatial::{orbit_match, rendezvous};
+use optimal::spatial::{excess, orbit_match, rendezvous};
 use orbits::ephemeris::Traveller;
 use orbits::epochs;
 use orbits::units;
 
-use super::{THERMAL, described, judged, prove, unsolved};
+use super::{THERMAL, allowance, described, judged, prove, tell_excess, unsolved};
 use crate::histories::columns;
 use crate::place::traveller;
 use crate::report::{Branch, Columns, Flight, Status};
@@ -46,6 +46,7 @@ pub(super) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
     };
     let (from, to) = (frozen(setting.ends.from), frozen(setting.ends.to));
     let target_axis = setting.ends.to.semi_major_axis;
+    let allowance = allowance(scenario);
     let found = match (scenario.arrive, scenario.depart) {
         (Arrive::Rendezvous, _) => {
             let moving = |time: f64| {
@@ -53,15 +54,18 @@ pub(super) fn flight(scenario: &Scenario, lightness: f64) -> (Flight, Columns) {
                 Some(ordered(&there))
             };
             let conditions = Conditions { lightness, from: &from, to: &moving, target_axis };
-            rendezvous::flights(&setting, &conditions)
+            let plain = rendezvous::flights(&setting, &conditions);
+            excess::granted(Kind::Meeting, &conditions, &allowance, plain)
         }
         (_, Some(_)) => {
             let conditions = Conditions { lightness, from: &from, to: &to, target_axis };
-            orbit_match::from_given_point(&setting, &conditions).into_iter().collect()
+            let plain = orbit_match::from_given_point(&setting, &conditions).into_iter().collect();
+            excess::granted(Kind::OpenArrival, &conditions, &allowance, plain)
         }
         (_, None) => {
             let conditions = Conditions { lightness, from: &from, to: &to, target_axis };
-            orbit_match::free_ends(&setting, &conditions)
+            let plain = orbit_match::free_ends(&setting, &conditions);
+            excess::granted(Kind::OpenEnds, &conditions, &allowance, plain)
         }
     };
     told(scenario, &bodies, &setting, &found)
@@ -129,6 +133,7 @@ fn told(scenario: &Scenario, bodies: &Bodies, setting: &Setting, found: &[Flown]
     flight.message = message;
     flight.depart = bodies.date(0.0);
     flight.arrive = bodies.date(best.flight.time);
+    tell_excess(&mut flight, &best.excess);
     flight.final_eccentricity = eccentricity(&best.end);
     prove(&mut flight.proof, &best.evidence);
     flight.proof.extremals_found = found.len() as u32;

@@ -163,12 +163,16 @@ impl Reader {
 
     fn study(&mut self, default: StudyKeys) -> StudyKeys {
         let range = |unit, min, max| {
-            move |info: &'static KeyInfo, text: &str| value::range(info, text, &value::Place { name: unit, min, max })
+            move |info: &'static KeyInfo, text: &str| {
+                value::range(info, text, &value::Place { name: unit, min, max })
+            }
         };
         StudyKeys {
             span: self.read("span", value::span).unwrap_or(default.span),
             step_d: self.read("step_d", value::whole).unwrap_or(default.step_d),
-            ac_range: self.read("ac_range", range("each acceleration", 0.01, 20.0)).unwrap_or(default.ac_range),
+            ac_range: self
+                .read("ac_range", range("each acceleration", 0.01, 20.0))
+                .unwrap_or(default.ac_range),
             area_range: self.read("area_range", range("each area", 1e-3, 1e9)),
         }
     }

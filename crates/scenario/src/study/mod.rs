@@ -11,9 +11,9 @@ mod told;
 #[cfg(test)]
 mod tests;
 
+use ::study::departures::{self, Plan};
 use orbits::epochs;
 use orbits::units;
-use ::study::departures::{self, Plan};
 
 pub use points::{Item, Point, Seed};
 pub use report::{Axis, AxisValue, Kind, LawMark, Pick, Slip, StudyReport, StudyRow};
@@ -80,7 +80,8 @@ impl Study {
         };
         let mut errors = unsuited(scenario);
         let too_many = |key, count: usize, most: usize| {
-            let rule = format!("makes {count} flights where {most} are the most: widen step_d or shorten span");
+            let rule =
+                format!("makes {count} flights where {most} are the most: widen step_d or shorten span");
             LinkError::new(key, &entry(scenario, key), rule)
         };
         if dates.len() > MOST_DATES {

@@ -2,10 +2,10 @@
 
 use std::f64::consts::TAU;
 
+use ::study::departures;
 use optimal::certificate::Verdict;
 use orbits::units;
 use serde::{Deserialize, Serialize};
-use ::study::departures;
 
 use crate::report::Status;
 

@@ -1,8 +1,8 @@
 //! From evaluated points to the study's report: dates, links, marks and picks.
 
+use ::study::departures::{self, Law};
 use orbits::epochs;
 use orbits::units;
-use ::study::departures::{self, Law};
 
 use super::points::Point;
 use super::report::{Axis, AxisValue, Kind, LawMark, Pick, Slip, StudyReport, StudyRow};
@@ -128,9 +128,11 @@ impl Study {
             notes.push(format!("Not finished: {} of {whole} flights.", rows.len()));
         }
         let fitted_until = epochs::start_of_day(2051, 1, 1).unwrap_or(f64::INFINITY);
-        if rows.iter().filter_map(|row| self.plan.arrival_j2000_d(row)).any(|arrival| arrival >= fitted_until) {
+        if rows.iter().filter_map(|row| self.plan.arrival_j2000_d(row)).any(|arrival| arrival >= fitted_until)
+        {
             notes.push(
-                "Some flights arrive after 2050, where the planets\u{2019} elements were not fitted.".to_owned(),
+                "Some flights arrive after 2050, where the planets\u{2019} elements were not fitted."
+                    .to_owned(),
             );
         }
         let synodic_d = self.synodic_d();

@@ -48,8 +48,12 @@ fn mended(route: &Route<'_>, item: &Item, seeds: &[Seed], departure: &dyn Fn(usi
         (item.first..item.end).map(|date| sweep::cold_with(route, departure(date), &Care::CAREFUL)).collect();
     for seed in seeds {
         let start = departure(seed.date);
-        let flight =
-            Flight { costate: seed.costate.into(), departure: start, time: seed.time, arrival: start + seed.time };
+        let flight = Flight {
+            costate: seed.costate.into(),
+            departure: start,
+            time: seed.time,
+            arrival: start + seed.time,
+        };
         let Some(branch) = Branch::taken_up(&route.conditions, &flight) else { continue };
         let forwards: Vec<usize> = (item.first.max(seed.date)..item.end).collect();
         let backwards: Vec<usize> = (item.first..item.end.min(seed.date + 1)).rev().collect();

@@ -49,7 +49,8 @@ pub fn mends(plan: &Plan, rows: &[Row]) -> Vec<Item> {
             let end = first + run.len();
             if run[0] != Law::Kept {
                 let beside = &rows[first.saturating_sub(1)..(end + 1).min(rows.len())];
-                let seeds: Vec<Seed> = beside.iter().filter_map(|row| row.best.map(|best| best.flight)).collect();
+                let seeds: Vec<Seed> =
+                    beside.iter().filter_map(|row| row.best.map(|best| best.flight)).collect();
                 items.push(Item {
                     sail: rows[0].sail,
                     first: rows[first].date,

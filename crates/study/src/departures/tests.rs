@@ -40,7 +40,9 @@ fn items_cover_every_date_of_every_sail_once() {
 #[test]
 fn items_span_at_most_a_quarter_of_the_synodic_period() {
     // Synodic periods with the Earth (common knowledge): Mars 780 d, Mercury 116 d.
-    for (to, step_d, longest) in [(Planet::Mars, 10.0, 12), (Planet::Mars, 60.0, 3), (Planet::Mercury, 10.0, 2)] {
+    for (to, step_d, longest) in
+        [(Planet::Mars, 10.0, 12), (Planet::Mars, 60.0, 3), (Planet::Mercury, 10.0, 2)]
+    {
         let items = plan(to, 0.0, step_d, 50, &[1.0]).items();
         assert_eq!(items.iter().map(|item| item.end - item.first).max(), Some(longest), "{to:?} {step_d}");
     }
@@ -126,11 +128,7 @@ fn picks_are_minima_of_time_and_the_earliest_arrival() {
     // The first three dates arrive on days 500, 500 and 505: leaving on the second costs nothing.
     assert_eq!(
         told,
-        [
-            (0, Kind::Earliest, true, 1),
-            (2, Kind::Shortest, false, 2),
-            (5, Kind::Shortest, false, 5),
-        ]
+        [(0, Kind::Earliest, true, 1), (2, Kind::Shortest, false, 2), (5, Kind::Shortest, false, 5),]
     );
     let slips: Vec<_> = picks[1].slips.iter().map(|slip| (slip.slip_d, slip.arrive_later_d)).collect();
     assert_eq!(slips.len(), 2, "slips of one and of four steps; two steps lead to the date without a flight");
