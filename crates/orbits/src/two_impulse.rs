@@ -179,8 +179,8 @@ impl TwoImpulse {
 /// too where one of the orbits is retrograde. To any place on an orbit ([`Goal::Orbit`]) whole revolutions add nothing
 /// but time, and are tried only where short flights are excluded.
 ///
-/// A search, not a proof: the best of the basins that a grid of a twenty-fourth of each body's revolution shows. The
-/// grid ends at some 6 000 points; where the target goes round a hundred times within the span of flight times
+/// A search, not a proof: the best of the basins that a grid of a twenty-fourth of each body's revolution, or a
+/// forty-eighth of the flight times, shows. The grid ends at some 6 000 points; where the target goes round a hundred times within the span of flight times
 /// (Neptune to Mercury) it is too coarse, and the impulse found can be a few per cent above the least.
 ///
 /// # Units

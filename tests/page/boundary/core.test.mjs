@@ -131,7 +131,7 @@ test("unknown values are null, never NaN or undefined", () => {
     if (typeof value === "number") assert.ok(Number.isFinite(value), where);
     else if (value && typeof value === "object") for (const [key, inner] of Object.entries(value)) visit(inner, `${where}.${key}`);
   };
-  for (const link of ["", "ac_mm_s2=1", "steer=local", "steer=fixed", "to=earth", "ac_mm_s2=0.05&to=neptune"]) visit(core.solve(link).report, link);
+  for (const link of ["", "ac_mm_s2=1", "steer=local", "steer=fixed", "to=earth", "ac_mm_s2=0.05&to=neptune", "geometry=spatial&arrive=rendezvous&depart=2031-02-01&ac_mm_s2=1"]) visit(core.solve(link).report, link);
 });
 
 test("each example decodes and solves, and says that it is invented", () => {

@@ -7,7 +7,7 @@ import { openCore, path } from "../support.mjs";
 const core = await openCore();
 const cli = path(process.env.SUNREACH ?? "target/quick/sunreach");
 const native = (link) => JSON.parse(execFileSync(cli, ["solve", link], { encoding: "utf8", maxBuffer: 1e8 }));
-const LINKS = ["", "to=venus&ac_mm_s2=0.3", "to=mercury&ac_mm_s2=2", "steer=local", "steer=fixed&cone_deg=30", "to=earth"];
+const LINKS = ["", "to=venus&ac_mm_s2=0.3", "to=mercury&ac_mm_s2=2", "steer=local", "steer=fixed&cone_deg=30", "to=earth", "vinf_km_s=2", "geometry=spatial&arrive=rendezvous&depart=2031-02-01&ac_mm_s2=1"];
 
 /** Numbers that are residuals: rounding alone decides them. */
 const RESIDUALS = ["position_error_km", "speed_error_m_s", "hamiltonian_drift", "final_eccentricity"];

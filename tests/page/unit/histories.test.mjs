@@ -30,6 +30,18 @@ test("outside the flight the ends hold, and an empty flight has no values", () =
   assert.ok(Number.isNaN(new Histories(["t_d"], new Float64Array()).at("t_d", 1)));
 });
 
+test("the clock angle goes the short way round", () => {
+  const clock = new Histories(["t_d", "clock_deg"], Float64Array.of(0, 1, 2, 170, -170, -160));
+  assert.equal(clock.at("clock_deg", 0.25), 175);
+  assert.equal(clock.at("clock_deg", 0.75), -175);
+  assert.equal(clock.at("clock_deg", 1.5), -165);
+});
+
+test("a column without a value is told apart", () => {
+  assert.equal(flight.has("turn_rate_deg_d"), true);
+  assert.equal(new Histories(["t_d", "film_temp_k"], Float64Array.of(0, 1, Number.NaN, Number.NaN)).has("film_temp_k"), false);
+});
+
 test("samples for a table are spread from the first to the last", () => {
   assert.deepEqual(flight.sampled(3), [0, 2, 4]);
   assert.deepEqual(flight.sampled(40), [0, 1, 2, 3, 4]);

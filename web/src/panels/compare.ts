@@ -13,10 +13,14 @@ export function mountCompare({ state }: Page): void {
     if (!shown) return;
     const { report } = shown.solved;
     const dated = transfers(report.impulsive);
-    beside.replaceChildren(...(dated.length > 0 ? [onDates(report, dated), h("h3", {}, "Between circles, on no date"), onCircles(report, false)] : [onCircles(report, true)]));
-    below.replaceChildren(covered(report, dated));
+    // Dates compare like with like: the circles then stand back.
+    beside.replaceChildren(dated.length > 0 ? onDates(report, dated) : onCircles(report, true));
+    below.replaceChildren(covered(report, dated), ...(dated.length > 0 ? [h("h3", {}, "Impulsive between circles, on no date"), onCircles(report, false)] : []));
   });
 }
+
+/** Whether a speed, km/s, shows in the table's digits; what a solver leaves over does not. */
+const isSeen = (speed_km_s: number | null) => (speed_km_s ?? 0) >= 0.0005;
 
 function ways(impulsive: Impulsive): [string, ImpulsiveWay][] {
   const all: [string, ImpulsiveWay | null][] = [
@@ -65,7 +69,7 @@ function onDates(report: Report, columns: [string, DatedTransfer][]): HTMLElemen
     sailOnly("Light time there, min", fixed(light_min, 2)),
     sailOnly("Least Sun–Earth–craft angle, °", fixed(seen?.sun_earth_craft_min_deg, 1)),
   ];
-  return table("Sail beside impulsive, on dates", ["", "sail", ...columns.map(([name]) => name)], rows, "compare");
+  return table("Sail beside impulsive, on dates", ["", "sail", ...columns.map(([name]) => name)], rows, "compare dated");
 }
 
 /** Transfers between circles; the sail's own column is there unless another table has it. */
@@ -77,7 +81,7 @@ function onCircles(report: Report, withSail: boolean): HTMLElement {
   const line = (name: string, sail: string, texts: string[]) => (withSail ? row(name, sail, ...texts) : row(name, ...texts));
   const radii = [ends.from.semi_major_axis_au, ends.to.semi_major_axis_au];
   const synodic = impulsive.synodic_d === null ? "equal periods" : `every ${withUnit(fixed(impulsive.synodic_d, 1), "d")}`;
-  const onExcess = withSail && ((flight.c3_km2_s2 ?? 0) > 0 || (flight.vinf_arrive_km_s ?? 0) > 0);
+  const onExcess = withSail && (isSeen(flight.vinf_used_km_s) || isSeen(flight.vinf_arrive_km_s));
   const rows = [
     line("Flight time, d", fixed(flight.time_d, 2), each((way) => fixed(way.time_d, 2))),
     onExcess && line("C3, km²/s²", fixed(flight.c3_km2_s2, 2), same(NONE)),
@@ -108,8 +112,8 @@ function covered(report: Report, dated: [string, DatedTransfer][]): HTMLElement 
   const { impulsive, craft, flight } = report;
   const met = valueOf(report.link, "arrive") === "rendezvous" ? "until the body is met, place and velocity" : "until the target orbit is matched";
   const end = flight.status === "flown" ? "until the semi-major axis, or at a constant cone angle the distance, is the target's" : met;
-  const excess = (flight.vinf_used_km_s ?? 0) > 0 ? `with ${fixed(flight.vinf_used_km_s, 3)} km/s of excess speed` : "with no excess speed";
-  const left = (flight.vinf_arrive_km_s ?? 0) > 0 ? `, but for ${fixed(flight.vinf_arrive_km_s, 3)} km/s of excess speed` : "";
+  const excess = isSeen(flight.vinf_used_km_s) ? `with ${fixed(flight.vinf_used_km_s, 3)} km/s of excess speed` : "with no excess speed";
+  const left = isSeen(flight.vinf_arrive_km_s) ? `, but for ${fixed(flight.vinf_arrive_km_s, 3)} km/s of excess speed` : "";
   const term = (name: string, text: string, side: string) => h("div", {}, h("dt", { class: side }, name), h("dd", {}, text));
   return h(
     "div",

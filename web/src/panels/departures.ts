@@ -152,6 +152,7 @@ export function mountDepartures({ state, client, studies }: Page): void {
     const told = client.guard((core) => core.study_report(name, link, mine.points()));
     if (!told) return;
     report = told;
+    pair.hidden = false;
     const all = told.axes.reduce((product, axis) => product * axis.values.length, 1);
     const left = progress.left_s === null ? "" : `, about ${fixed(Math.ceil(progress.left_s), 0)} s left`;
     const lost = progress.lost > 0 ? `; ${progress.lost} parts given up after a crash` : "";
@@ -193,6 +194,7 @@ export function mountDepartures({ state, client, studies }: Page): void {
   }
   state.shown.watch(compare);
 
+  const pair = h("div", { class: "study", hidden: true }, figure.frame, rows.element);
   const asked = h("div", { class: "study-fields" }, ...fields);
   const buttons = h("div", { class: "tools" }, dates, map);
   const dateless = h(
@@ -219,7 +221,7 @@ export function mountDepartures({ state, client, studies }: Page): void {
     said,
     spoken,
     agreement,
-    h("div", { class: "study" }, figure.frame, rows.element),
+    pair,
     picks.element,
     notes,
   );

@@ -69,6 +69,30 @@ struct Family {
     revolutions: u32,
 }
 
+/// Whether the target, at arrival, is less than half a turn ahead of the start (counter-clockwise). Between inclined
+/// orbits a ridge runs along the half turn, since the plane of the arc then stands steep: a narrow basin on one side of
+/// it would go unseen between higher points of the other.
+fn is_ahead(from: &State, to: &State) -> bool {
+    from.position.x * to.position.y >= from.position.y * to.position.x
+}
+
+/// Where a descent starts, in which family, and on which side of the ridge.
+#[derive(Clone, Copy)]
+struct Basin {
+    family: Family,
+    ahead: bool,
+    lowest: Point,
+}
+
+/// The least sum of impulses over the grid.
+struct Grid {
+    axes: [Axis; 3],
+    /// One row for each family, infinite where it has no arc.
+    costs: Vec<Vec<f64>>,
+    /// Side of the ridge of each grid point.
+    ahead: Vec<bool>,
+}
+
 /// The question with what the search looks up again and again. Variables: departure [d since J2000], flight time
 /// [d], mean anomaly on the target's orbit [rad] (free for [`Goal::Orbit`] only).
 struct Search<'a> {
@@ -93,11 +117,14 @@ impl Search<'_> {
         (longest >= span.shortest_d).then(|| [depart, time.clamp(span.shortest_d, longest), anomaly])
     }
 
-    /// The cheapest arc of one family at these values.
-    fn best_of(&self, family: Family, x: [f64; 3]) -> Option<Flown> {
+    /// The cheapest arc of one family at these values; none on the other side of the ridge than `ahead`, if it is given.
+    fn best_of(&self, family: Family, ahead: Option<bool>, x: [f64; 3]) -> Option<Flown> {
         let [depart, time, anomaly] = self.inside(x)?;
         let from = self.question.from.state(depart).ok()?;
         let to = self.target(depart + time, anomaly)?;
+        if ahead.is_some_and(|ahead| ahead != is_ahead(&from, &to)) {
+            return None;
+        }
         let (arc, sum_km_s) = lambert_between((&from, &to), time, family.direction, family.revolutions)
             .into_iter()
             .filter(|arc| arc.revolutions == family.revolutions)
@@ -106,9 +133,21 @@ impl Search<'_> {
         Some(Flown { depart_j2000_d: depart, time_d: time, from, to, arc, sum_km_s })
     }
 
-    /// The function to descend on, km/s.
-    fn cost(&self, family: Family, x: [f64; 3]) -> f64 {
-        self.best_of(family, x).map_or(f64::INFINITY, |flown| flown.sum_km_s)
+    /// The lowest place found from `start` within one family, until the simplex is `shrink` grid steps wide.
+    fn settled(&self, basin: &Basin, ahead: Option<bool>, axes: &[Axis; 3], shrink: f64) -> Basin {
+        // First steps go inwards: beyond the edge of the span nothing changes, and a simplex there would not turn round.
+        let (start, _) = basin.lowest;
+        let step = std::array::from_fn(|axis| {
+            let Axis { first, last, .. } = axes[axis];
+            if start[axis] > 0.5 * (first + last) {
+                -0.5 * axes[axis].step()
+            } else {
+                0.5 * axes[axis].step()
+            }
+        });
+        let cost = |x| self.best_of(basin.family, ahead, x).map_or(f64::INFINITY, |flown| flown.sum_km_s);
+        let (x, sum_km_s) = descend(cost, start, step, shrink);
+        Basin { lowest: (self.inside(x).unwrap_or(x), sum_km_s), ..*basin }
     }
 }
 
@@ -119,36 +158,25 @@ pub(super) fn search(question: &Question, span: &Span) -> Option<TwoImpulse> {
     let search = Search { question, span, orbit };
     let axes = axes(question, span, &from_orbit, &orbit);
     let families = families(question, span, &from_orbit, &orbit);
-    let costs = costs(&search, &axes, &families);
-    // First steps go inwards: beyond the edge of the span nothing changes, and a simplex there would not turn round.
-    let inwards = |axis: usize, at: f64| {
-        let Axis { first, last, .. } = axes[axis];
-        if at > 0.5 * (first + last) { -0.5 * axes[axis].step() } else { 0.5 * axes[axis].step() }
-    };
-    let settle = |family: Family, start: [f64; 3], shrink: f64| {
-        let step = std::array::from_fn(|axis| inwards(axis, start[axis]));
-        let (x, sum_km_s) = descend(|x| search.cost(family, x), start, step, shrink);
-        (family, (search.inside(x).unwrap_or(x), sum_km_s))
-    };
-    let lower = |a: &(Family, Point), b: &(Family, Point)| a.1.1.total_cmp(&b.1.1);
-    let mut sounded: Vec<(Family, Point)> = basins(&costs, &axes, &families)
-        .into_iter()
-        .map(|(family, start)| settle(family, start, SOUNDED))
-        .collect();
+    let grid = grid(&search, axes, &families);
+    let lower = |a: &Basin, b: &Basin| a.lowest.1.total_cmp(&b.lowest.1);
+    let settled = |basin: &Basin, shrink| search.settled(basin, Some(basin.ahead), &axes, shrink);
+    let mut sounded: Vec<Basin> =
+        basins(&grid, &families).iter().map(|basin| settled(basin, SOUNDED)).collect();
     sounded.sort_by(lower);
-    let settled = sounded.iter().take(BASINS.1).map(|(family, point)| settle(*family, point.0, SETTLED));
-    let (family, mut best) = settled.min_by(lower)?;
+    let mut best = sounded.iter().take(BASINS.1).map(|basin| settled(basin, SETTLED)).min_by(lower)?;
     for _ in 0..RESTARTS_MAX {
-        let (_, again) = settle(family, best.0, SETTLED);
-        let gained = best.1 - again.1;
+        // Without a wall along the ridge: where orbits share a plane there is none, and the lowest place may lie on it.
+        let again = search.settled(&best, None, &axes, SETTLED);
+        let gained = best.lowest.1 - again.lowest.1;
         if gained > 0.0 {
             best = again;
         }
-        if gained <= GAIN * best.1 {
+        if gained <= GAIN * best.lowest.1 {
             break;
         }
     }
-    search.best_of(family, best.0)?.told(question, family.direction)
+    search.best_of(best.family, None, best.lowest.0)?.told(question, best.family.direction)
 }
 
 fn axes(question: &Question, span: &Span, from: &Elements, to: &Elements) -> [Axis; 3] {
@@ -203,11 +231,12 @@ fn families(question: &Question, span: &Span, from: &Elements, to: &Elements) ->
     families
 }
 
-/// The least sum of impulses of every family at every grid point: one row of the grid for each family.
-fn costs(search: &Search, axes: &[Axis; 3], families: &[Family]) -> Vec<Vec<f64>> {
+/// The least sum of impulses of every family at every grid point.
+fn grid(search: &Search, axes: [Axis; 3], families: &[Family]) -> Grid {
     let [departs, times, places] = axes;
     let cells = departs.count * times.count * places.count;
     let mut costs = vec![vec![f64::INFINITY; cells]; families.len()];
+    let mut ahead = vec![false; cells];
     let fixed: Vec<Option<State>> = match search.question.goal {
         Goal::Body => Vec::new(),
         Goal::Orbit => (0..places.count).map(|k| search.target(0.0, places.at(k))).collect(),
@@ -225,6 +254,7 @@ fn costs(search: &Search, axes: &[Axis; 3], families: &[Family]) -> Vec<Vec<f64>
                 };
                 let Some(to) = to else { continue };
                 let cell = (i * times.count + j) * places.count + k;
+                ahead[cell] = is_ahead(&from, &to);
                 for (first, family) in families.iter().enumerate().filter(|(_, f)| f.revolutions == 0) {
                     let highest = families.iter().filter(|f| f.direction == family.direction).count() - 1;
                     for arc in lambert_between((&from, &to), time, family.direction, highest as u32) {
@@ -235,38 +265,44 @@ fn costs(search: &Search, axes: &[Axis; 3], families: &[Family]) -> Vec<Vec<f64>
             }
         }
     }
-    costs
+    Grid { axes, costs, ahead }
 }
 
-/// Grid points lower than all their neighbours, the lowest first.
-fn basins(costs: &[Vec<f64>], axes: &[Axis; 3], families: &[Family]) -> Vec<(Family, [f64; 3])> {
-    let [departs, times, places] = axes;
+/// Grid points lower than all their neighbours on the same side of the ridge, the lowest first.
+fn basins(grid: &Grid, families: &[Family]) -> Vec<Basin> {
+    let [departs, times, places] = &grid.axes;
     let mut found = Vec::new();
-    for (family, row) in families.iter().zip(costs) {
+    for (family, row) in families.iter().zip(&grid.costs) {
         for i in 0..departs.count {
             for j in 0..times.count {
                 for k in 0..places.count {
                     let cell = (i * times.count + j) * places.count + k;
-                    if row[cell].is_finite() && is_lowest(row, axes, [i, j, k], cell) {
-                        found.push((row[cell], *family, [departs.at(i), times.at(j), places.at(k)]));
+                    if row[cell].is_finite() && is_lowest(grid, row, [i, j, k], cell) {
+                        let x = [departs.at(i), times.at(j), places.at(k)];
+                        found.push(Basin {
+                            family: *family,
+                            ahead: grid.ahead[cell],
+                            lowest: (x, row[cell]),
+                        });
                     }
                 }
             }
         }
     }
-    found.sort_by(|a, b| a.0.total_cmp(&b.0));
+    found.sort_by(|a, b| a.lowest.1.total_cmp(&b.lowest.1));
     found.truncate(BASINS.0);
-    found.into_iter().map(|(_, family, x)| (family, x)).collect()
+    found
 }
 
-/// Whether no neighbour is lower; of equal neighbours the first counts.
-fn is_lowest(row: &[f64], axes: &[Axis; 3], at: [usize; 3], cell: usize) -> bool {
-    let around = |axis: usize| at[axis].saturating_sub(1)..=(at[axis] + 1).min(axes[axis].count - 1);
+/// Whether no neighbour on the same side is lower; of equal neighbours the first counts.
+fn is_lowest(grid: &Grid, row: &[f64], at: [usize; 3], cell: usize) -> bool {
+    let around = |axis: usize| at[axis].saturating_sub(1)..=(at[axis] + 1).min(grid.axes[axis].count - 1);
     for i in around(0) {
         for j in around(1) {
             for k in around(2) {
-                let other = (i * axes[1].count + j) * axes[2].count + k;
-                if row[other] < row[cell] || (row[other] == row[cell] && other < cell) {
+                let other = (i * grid.axes[1].count + j) * grid.axes[2].count + k;
+                let lower = row[other] < row[cell] || (row[other] == row[cell] && other < cell);
+                if lower && grid.ahead[other] == grid.ahead[cell] {
                     return false;
                 }
             }
