@@ -81,14 +81,21 @@ fn spherical([x, y, z]: [f64; 3]) -> [f64; 3] {
     [y.atan2(x).to_degrees(), z.atan2(across).to_degrees(), across.hypot(z)]
 }
 
+/// Longitude and latitude in arcsec, distance in 1000 km.
+struct Errors {
+    planet: Planet,
+    stated: [f64; 3],
+    largest: [f64; 3],
+}
+
 /// Every planet's states, and its record of stated and largest errors.
-fn table() -> (Vec<Row>, Vec<(Planet, [f64; 3], [f64; 3])>) {
+fn table() -> (Vec<Row>, Vec<Errors>) {
     let table = reference("planet_positions.json");
     let rows: Vec<Row> = list(&table, "/states").iter().map(Row::read).collect();
     let errors = list(&table, "/approximate_elements/rows").iter().map(|record| {
         let triple = |key: &str| [0, 1, 2].map(|i| number(record, &format!("{key}/{i}")));
         let planet = Planet::from_key(words(record, "/planet")).expect("a planet");
-        (planet, triple("/stated"), triple("/largest"))
+        Errors { planet, stated: triple("/stated"), largest: triple("/largest") }
     });
     (rows, errors.collect())
 }
@@ -112,8 +119,7 @@ fn the_table_holds_every_planet_and_the_stated_errors_are_standishs() {
         (Planet::Neptune, [10.0, 1.0, 200.0]),
     ];
     let (rows, errors) = table();
-    let stated: Vec<(Planet, [f64; 3])> =
-        errors.iter().map(|(planet, stated, _)| (*planet, *stated)).collect();
+    let stated: Vec<(Planet, [f64; 3])> = errors.iter().map(|e| (e.planet, e.stated)).collect();
     assert_eq!(stated, published);
     for planet in Planet::ALL {
         assert_eq!(rows.iter().filter(|row| row.planet == planet).count(), DATES);
@@ -123,7 +129,7 @@ fn the_table_holds_every_planet_and_the_stated_errors_are_standishs() {
 #[test]
 fn typical_errors_are_those_stated() {
     let (rows, errors) = table();
-    for (planet, stated, _) in errors {
+    for Errors { planet, stated, .. } in errors {
         let own = rows.iter().filter(|row| row.planet == planet);
         let misses: Vec<[f64; 4]> =
             own.map(|row| {
@@ -146,7 +152,7 @@ fn no_state_misses_by_more_than_the_generator_found() {
     // Half a unit of the last digit written there.
     const ROUNDING: f64 = 0.05;
     let (rows, errors) = table();
-    for (planet, _, largest) in errors {
+    for Errors { planet, largest, .. } in errors {
         for row in rows.iter().filter(|row| row.planet == planet) {
             let misses = row.misses();
             for i in 0..3 {
@@ -185,7 +191,7 @@ fn velocity_allowed_m_s(planet: Planet, stated: [f64; 3]) -> f64 {
 #[test]
 fn velocities_miss_by_no_more_than_positions_say() {
     let (rows, errors) = table();
-    for (planet, stated, _) in errors {
+    for Errors { planet, stated, .. } in errors {
         let allowed = velocity_allowed_m_s(planet, stated);
         let mut worst = 0f64;
         for row in rows.iter().filter(|row| row.planet == planet) {

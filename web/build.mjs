@@ -2,6 +2,7 @@
 //
 // Needs web/pkg/wasm.js and web/pkg/core.wasm (the Makefile makes them). The policies stand here, since the one for
 // the file holds hashes of what is bundled.
+import { gzipSync } from "node:zlib";
 import { build } from "esbuild";
 import { createHash } from "node:crypto";
 import { mkdir, readFile, rm, writeFile } from "node:fs/promises";
@@ -77,7 +78,7 @@ const block = (id, text) => `<script type="text/plain" id="${id}">${text.replace
 const file = fill(template, {
   policy: filePolicy(sha256(fileMain), sha256(styles)),
   styles: `<style>${styles}</style>`,
-  code: block("core", core.toString("base64")) + block("worker", worker) + `<script>${fileMain}</script>`,
+  code: block("core", gzipSync(core, { level: 9 }).toString("base64")) + block("worker", worker) + `<script>${fileMain}</script>`,
 });
 await writeFile(`${dist}sunreach.html`, file);
 

@@ -89,7 +89,10 @@ impl Sheet<'_> {
     pub(crate) fn cursor(&mut self, report: &Report, t_d: f64) {
         let inside = self.view.frame.grown(-6.0);
         let style = self.style(self.theme.ink);
-        for (end, is_start) in [(&report.ends.from, true), (&report.ends.to, false)] {
+        let ends = [(&report.ends.from, true), (&report.ends.to, false)];
+        // The same body is drawn once.
+        let count = if report.ends.from == report.ends.to { 1 } else { 2 };
+        for (end, is_start) in ends.into_iter().take(count) {
             let Some(at) = body(end, t_d).map(|au| self.view.px(au)).filter(|at| inside.contains(*at)) else {
                 continue;
             };

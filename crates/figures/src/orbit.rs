@@ -54,7 +54,8 @@ pub(crate) fn draw(report: &Report, columns: &Columns, options: &FigureOptions, 
     let rings_au = sheet.rings(&heights, [from, to]);
     sheet.node_lines([from, to]);
     let from_line = sheet.ellipse(from, &heights);
-    let to_line = sheet.ellipse(to, &heights);
+    // One orbit is one line with one name and one arrow.
+    let to_line = if from == to { Vec::new() } else { sheet.ellipse(to, &heights) };
     let pitch_px = pitch(report, columns, &view);
     let crowded = pitch_px < CROWDED;
     let ticks = sheet.find_ticks(&places, crowded);

@@ -121,7 +121,11 @@ impl Sheet<'_> {
     /// Names of departure and arrival, with their dates where there are some; they take the orbit's name along where
     /// the orbit is too small for it.
     pub(crate) fn end_labels(&mut self, places: &[Place], report: &Report, bodies: &[BodyMark]) {
+        // Where nothing is flown there is neither departure nor arrival.
         let (Some(first), Some(last)) = (places.first(), places.last()) else { return };
+        if first.t_d == last.t_d {
+            return;
+        }
         let sun = self.view.sun();
         let style = self.style(self.theme.ink);
         let flight = &report.flight;
@@ -145,7 +149,7 @@ impl Sheet<'_> {
     }
 
     pub(crate) fn orbit_label(&mut self, end: &End, pieces: &[Vec<Point>], outside_first: bool) {
-        if self.is_nameless(end) {
+        if self.is_nameless(end) || pieces.is_empty() {
             return;
         }
         let content = orbit_name(end);

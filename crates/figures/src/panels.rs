@@ -74,17 +74,17 @@ pub(crate) fn quantities<'a>(
 fn quantity<'a>(column: &str, columns: &'a Columns, spatial: bool) -> Option<Quantity<'a>> {
     let column = *PANELS.iter().find(|name| **name == column)?;
     let (name, unit, kind, values) = match column {
-        "cone_deg" if spatial => ("Cone angle", "deg", Kind::Quarter, &columns.cone_deg),
-        "cone_deg" => ("Cone angle", "deg", Kind::Angle, &columns.cone_deg),
-        "clock_deg" => ("Clock angle", "deg", Kind::Wrapped, &columns.clock_deg),
+        "cone_deg" if spatial => ("Cone angle", "\u{b0}", Kind::Quarter, &columns.cone_deg),
+        "cone_deg" => ("Cone angle", "\u{b0}", Kind::Angle, &columns.cone_deg),
+        "clock_deg" => ("Clock angle", "\u{b0}", Kind::Wrapped, &columns.clock_deg),
         "distance_au" => ("Distance from the Sun", "au", Kind::Distance, &columns.distance_au),
         "speed_km_s" => ("Speed", "km/s", Kind::Plain, &columns.speed_km_s),
-        "turn_rate_deg_d" => ("Turn rate of the sail", "deg/d", Kind::Log, &columns.turn_rate_deg_d),
+        "turn_rate_deg_d" => ("Turn rate of the sail", "\u{b0}/d", Kind::Log, &columns.turn_rate_deg_d),
         "film_temp_k" => ("Film temperature", "K", Kind::Plain, &columns.film_temp_k),
         "sail_accel_mm_s2" => ("Sail acceleration", "mm/s²", Kind::Plain, &columns.sail_accel_mm_s2),
         "earth_range_au" => ("Distance from the Earth", "au", Kind::Plain, &columns.earth_range_au),
         "sun_earth_craft_deg" => {
-            ("Sun\u{2013}Earth\u{2013}craft angle", "deg", Kind::Angle, &columns.sun_earth_craft_deg)
+            ("Sun\u{2013}Earth\u{2013}craft angle", "\u{b0}", Kind::Angle, &columns.sun_earth_craft_deg)
         }
         _ => return None,
     };

@@ -72,6 +72,7 @@ impl<const N: usize> Sub for Dual<N> {
     }
 }
 
+#[allow(clippy::suspicious_arithmetic_impl, reason = "the product rule is a sum")]
 impl<const N: usize> Mul for Dual<N> {
     type Output = Self;
     #[inline(always)]
@@ -115,7 +116,6 @@ impl<const N: usize> Mul<f64> for Dual<N> {
     }
 }
 
-#[allow(clippy::suspicious_arithmetic_impl, reason = "one reciprocal serves the value and every derivative")]
 impl<const N: usize> Div<f64> for Dual<N> {
     type Output = Self;
     #[inline(always)]

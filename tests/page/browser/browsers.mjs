@@ -81,6 +81,7 @@ async function wrap(page, name, { width = 1440, height = 900, before, dark = fal
     press: (key) => page.keyboard.press(key),
     click: (selector) => page.click(selector),
     mouse: page.mouse,
+    keyboard: page.keyboard,
     screenshot: (path) => page.screenshot({ path }),
     close: () => page.close(),
     /** Replaces a field's text as typing would. */

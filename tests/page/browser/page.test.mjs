@@ -240,7 +240,7 @@ for (const name of ["chromium", "firefox"])
 
     visit("every control is reached by the keyboard alone, and the focus shows", {}, async (page) => {
       const wanted = await page.evaluate(() => {
-        const all = [...document.querySelectorAll("button:not(:disabled), input, select, summary, [tabindex='0']")];
+        const all = [...document.querySelectorAll("button:not(:disabled), input:not([tabindex='-1']), select, summary, [tabindex='0']")];
         const radios = new Set();
         return all.filter((element) => {
           if (element.closest("[hidden]") || (element.closest("details:not([open])") && element.tagName !== "SUMMARY")) return false;
@@ -285,7 +285,7 @@ for (const name of ["chromium", "firefox"])
         const scroll = await page.evaluate(() => document.documentElement.scrollWidth);
         assert.ok(scroll <= width, `${scroll}`);
         const small = await page.evaluate(() =>
-          [...document.querySelectorAll("button, select, summary, input:not([type=radio]), label.choice")]
+          [...document.querySelectorAll("button, select, summary, input:not([type=radio], [type=checkbox], [aria-hidden]), label.choice")]
             .filter((element) => element.checkVisibility() && !element.closest(".unseen"))
             .map((element) => ({ html: element.outerHTML.slice(0, 80), box: element.getBoundingClientRect() }))
             .filter(({ box }) => box.width > 0 && (box.width < 24 || box.height < 24))

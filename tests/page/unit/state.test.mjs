@@ -56,7 +56,7 @@ test("a lightness number that is none reaches the core as typed, and its error c
   state.edit("lightness", "fast");
   assert.equal(sent(state).get("ac_mm_s2"), "fast");
   state.verdict.set({ link: null, errors: [{ key: "ac_mm_s2", value: "fast", rule: "must be a number" }] });
-  const control = state.controlOf("ac_mm_s2");
+  const control = state.controlOf({ key: "ac_mm_s2", value: "fast", rule: "must be a number" });
   assert.equal(control.key, "lightness");
   assert.equal(state.errorsAt(control).length, 1);
 });

@@ -85,13 +85,16 @@ def solve(beta, r_f, guess, mesh, excess=0.0):
         ]
     )
     low_r = 0.3 * min(1.0, r_f)
-    lower = [1e-2, -excess, -excess] + [low_r, -3, 0.02] * (n + 1) + [low_r, -3, 0.02] * (n * DEGREE) + [0, -1] * (n * DEGREE)
+    lower = (
+        [1e-2, -excess, -excess]
+        + [low_r, -3, 0.02] * (n + 1)
+        + [low_r, -3, 0.02] * (n * DEGREE)
+        + [0, -1] * (n * DEGREE)
+    )
     high_r = 3.0 * max(1.0, r_f)
     upper = [1e4, excess, excess] + [high_r, 3, 5] * (n + 1) + [high_r, 3, 5] * (n * DEGREE) + [1, 1] * (n * DEGREE)
     clock = time.process_time()
-    out = solver(
-        x0=z0, lbx=lower, ubx=upper, lbg=[0] * n_equal + [-10] * n_unequal, ubg=[0] * (n_equal + n_unequal)
-    )
+    out = solver(x0=z0, lbx=lower, ubx=upper, lbg=[0] * n_equal + [-10] * n_unequal, ubg=[0] * (n_equal + n_unequal))
     if not solver.stats()["success"]:
         return None
     values = np.array(out["x"]).ravel()
@@ -148,8 +151,9 @@ def spiral_guess(beta, r_f, cone_deg):
         return 1.0 / (2.0 / x[0] - x[1] ** 2 - x[2] ** 2) - r_f if x[0] < 2 / (x[1] ** 2 + x[2] ** 2) else 1.0
 
     axis_reached.terminal = True
-    flown = solve_ivp(rate, (0, 4000), [1, 0, 1], method="DOP853", rtol=1e-8, atol=1e-10, dense_output=True,
-                      events=axis_reached)
+    flown = solve_ivp(
+        rate, (0, 4000), [1, 0, 1], method="DOP853", rtol=1e-8, atol=1e-10, dense_output=True, events=axis_reached
+    )
 
     def guess(at):
         if at is None:
@@ -248,8 +252,10 @@ def main():
     args = args.parse_args()
     r_f = TARGETS_AU.get(args.target) or float(args.target)
     flight = best_flight(args.ac_mm_s2 / SUN_GRAVITY_1AU_MM_S2, r_f)
-    print(f"{flight['t_f'] * TIME_UNIT_D:.6f} d, {flight['angle']:.6f} rad, mesh change "
-          f"{flight['halved_mesh_change']:.1e}, {flight['elements']} elements x degree {DEGREE}, {flight['cpu_s']:.2f} s")
+    print(
+        f"{flight['t_f'] * TIME_UNIT_D:.6f} d, {flight['angle']:.6f} rad, mesh change "
+        f"{flight['halved_mesh_change']:.1e}, {flight['elements']} elements x degree {DEGREE}, {flight['cpu_s']:.2f} s"
+    )
     for name, days in flight["local_times_d"].items():
         print(f"  {name}: {days:.4f} d")
     return 0

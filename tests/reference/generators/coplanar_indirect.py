@@ -51,12 +51,7 @@ def rate(_, y, beta):
 def hamiltonian(y, beta):
     r, u, v, _, q_r, q_u, q_v = y
     f_r, f_t, _ = best_force(q_u, q_v)
-    return (
-        q_r * u
-        + q_u * (v * v / r - 1.0 / r**2)
-        - q_v * u * v / r
-        + beta / r**2 * (q_u * f_r + q_v * f_t)
-    )
+    return q_r * u + q_u * (v * v / r - 1.0 / r**2) - q_v * u * v / r + beta / r**2 * (q_u * f_r + q_v * f_t)
 
 
 def fly(beta, first_costate, t_f, times=None, leave=(0.0, 0.0)):

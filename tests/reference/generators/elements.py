@@ -11,8 +11,6 @@ import math
 import casadi as ca
 import numpy as np
 
-from constants import TIME_UNIT_D
-
 J2000_JD_TDB = 2451545.0
 CENTURY_D = 36525.0
 
@@ -68,7 +66,14 @@ def state_on_ellipse(a, e, inclination, arg_perihelion, node, eccentric):
     x, y = a * (cos(eccentric) - e), a * b * sin(eccentric)
     pace = sqrt(1 / a) / (1 - e * cos(eccentric))
     vx, vy = -pace * sin(eccentric), pace * b * cos(eccentric)
-    cw, sw, cn, sn, ci, si = cos(arg_perihelion), sin(arg_perihelion), cos(node), sin(node), cos(inclination), sin(inclination)
+    cw, sw, cn, sn, ci, si = (
+        cos(arg_perihelion),
+        sin(arg_perihelion),
+        cos(node),
+        sin(node),
+        cos(inclination),
+        sin(inclination),
+    )
     p = (cw * cn - sw * sn * ci, cw * sn + sw * cn * ci, sw * si)
     q = (-sw * cn - cw * sn * ci, -sw * sn + cw * cn * ci, cw * si)
     return [p[k] * x + q[k] * y for k in range(3)], [p[k] * vx + q[k] * vy for k in range(3)]
@@ -96,8 +101,3 @@ def synodic_period_d(one, other):
     """From the table's mean motions in longitude."""
     rate = abs(PLANETS[one][1][3] - PLANETS[other][1][3]) / 360.0 / CENTURY_D
     return 1.0 / rate
-
-
-def canonical_days(days):
-    """Days to canonical time units."""
-    return days / TIME_UNIT_D

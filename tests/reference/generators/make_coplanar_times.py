@@ -69,9 +69,12 @@ def row(target, r_f, beta, neighbour):
 
 
 def report(line):
-    print(f"{line['target']:>9} {line['r_f_au']:<11g} {line['ac_mm_s2']:<6g} {line['time_d_collocation']:.6f} "
-          f"{line['time_d_indirect']:.6f} {line['relative_difference']:+.1e} {line['swept_angle_rad']:.5f} "
-          f"{line['mesh']['relative_change_when_halved']:+.0e} {line['guesses']}", flush=True)
+    print(
+        f"{line['target']:>9} {line['r_f_au']:<11g} {line['ac_mm_s2']:<6g} {line['time_d_collocation']:.6f} "
+        f"{line['time_d_indirect']:.6f} {line['relative_difference']:+.1e} {line['swept_angle_rad']:.5f} "
+        f"{line['mesh']['relative_change_when_halved']:+.0e} {line['guesses']}",
+        flush=True,
+    )
 
 
 def main():

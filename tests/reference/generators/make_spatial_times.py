@@ -40,7 +40,11 @@ def local_solutions(found):
     groups = []
     for flight in sorted(found.values(), key=lambda f: f["t_f"]):
         days, angle = flight["t_f"] * TIME_UNIT_D, flight["longitude_swept"]
-        if groups and abs(days - groups[-1]["time_d"]) < 0.02 and abs(angle - groups[-1]["longitude_swept_rad"]) < 0.01:
+        if (
+            groups
+            and abs(days - groups[-1]["time_d"]) < 0.02
+            and abs(angle - groups[-1]["longitude_swept_rad"]) < 0.01
+        ):
             groups[-1]["guesses"] += 1
         else:
             groups.append({"time_d": round(days, 2), "longitude_swept_rad": round(angle, 3), "guesses": 1})
@@ -76,7 +80,7 @@ def search_orbit(problem):
     Flights of three accelerations are laid down, 12 + 6 + 6 of them. Returns (free local optima by name, guesses tried,
     map of the held flights).
     """
-    found, tried, windows = {}, 0, []
+    found, tried, held_map = {}, 0, []
     for factor, count in ((1.0, 12), (0.75, 6), (1.4, 6)):
         plane = plane_direct.best_flight(factor * problem.beta, TARGETS_AU[problem.target])
         elements_count = max(30, math.ceil(plane["angle"] / (2 * math.pi) * 20))
@@ -88,7 +92,7 @@ def search_orbit(problem):
             if held is None:
                 continue
             start, name = held["states"][:, 0], f"{factor} x acceleration, {name}"
-            windows.append(
+            held_map.append(
                 {
                     "guess": name,
                     "depart_longitude_deg": round(math.degrees(math.atan2(start[1], start[0])) % 360.0, 2),
@@ -98,7 +102,7 @@ def search_orbit(problem):
             freed = program.solve(direct.as_guess(held), warm=True)
             if freed is not None:
                 found[name] = freed
-    return found, tried, windows
+    return found, tried, held_map
 
 
 def search_rendezvous(problem, t_plane):
@@ -187,8 +191,11 @@ def excess_row(ac, vinf_km_s):
             "bubble_slack_max": sci(flight["slack"]),
         },
         "indirect": {"residual": sci(shot["residual"]), "hamiltonian_drift": sci(shot["hamiltonian_drift"])},
-        "guesses": {"converged": len(local), "time_d_min": round(min(local.values()), 4),
-                    "time_d_max": round(max(local.values()), 4)},
+        "guesses": {
+            "converged": len(local),
+            "time_d_min": round(min(local.values()), 4),
+            "time_d_max": round(max(local.values()), 4),
+        },
     }
 
 
@@ -211,13 +218,24 @@ class Table:
         key = ("kind", "target", "ac_mm_s2", "depart", "vinf_km_s", "vinf_arrive_km_s")
         rows = [r for r in self.content["cases"] if any(r.get(k) != row.get(k) for k in key)] + [row]
         order = ["coplanar_excess", "orbit", "rendezvous"]
-        rows.sort(key=lambda r: (order.index(r["kind"]), r["target"], -r["ac_mm_s2"], r["vinf_km_s"],
-                                 r.get("vinf_arrive_km_s", 0.0), r.get("depart") or ""))
+        rows.sort(
+            key=lambda r: (
+                order.index(r["kind"]),
+                r["target"],
+                -r["ac_mm_s2"],
+                r["vinf_km_s"],
+                r.get("vinf_arrive_km_s", 0.0),
+                r.get("depart") or "",
+            )
+        )
         self.content["cases"] = rows
         OUT.write_text(json.dumps(self.content, indent=1) + "\n")
         when = row.get("depart") or ""
-        print(f"{row['kind']} {row['target']} {row['ac_mm_s2']} {when} {row['time_d_collocation']} "
-              f"{row['relative_difference']:+.0e} {row.get('local_optima', '')}", flush=True)
+        print(
+            f"{row['kind']} {row['target']} {row['ac_mm_s2']} {when} {row['time_d_collocation']} "
+            f"{row['relative_difference']:+.0e} {row.get('local_optima', '')}",
+            flush=True,
+        )
 
 
 def rendezvous_problems(target, beta):
@@ -247,9 +265,9 @@ def main(kinds, targets):
     if "orbit" in kinds:
         for target, ac in [c for c in ORBIT_CASES if c[0] in targets]:
             problem = direct.Problem(target, ac / SUN_GRAVITY_1AU_MM_S2)
-            found, tried, windows = search_orbit(problem)
+            found, tried, held_map = search_orbit(problem)
             row = spatial_row(problem, found, tried)
-            row["departure_windows"] = windows
+            row["held_departures"] = held_map
             table.add(row)
 
 

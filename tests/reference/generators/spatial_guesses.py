@@ -26,10 +26,22 @@ def curve(first, last, turn, bulge):
         theta = longitude + turn * at
         c, s = np.cos(theta), np.sin(theta)
         speed = r**-0.5
-        radial, along = math.cos(CONE_RAD) ** 3, math.copysign(math.cos(CONE_RAD) ** 2 * math.sin(CONE_RAD), r_1 - r_0)
+        radial, along = (
+            math.cos(CONE_RAD) ** 3,
+            math.copysign(math.cos(CONE_RAD) ** 2 * math.sin(CONE_RAD), r_1 - r_0),
+        )
         return np.array(
-            [r * c, r * s, first[2] + (last[2] - first[2]) * at, -speed * s, speed * c, 0 * at,
-             radial * c - along * s, radial * s + along * c, 0 * at]
+            [
+                r * c,
+                r * s,
+                first[2] + (last[2] - first[2]) * at,
+                -speed * s,
+                speed * c,
+                0 * at,
+                radial * c - along * s,
+                radial * s + along * c,
+                0 * at,
+            ]
         )
 
     return path
@@ -54,7 +66,17 @@ def lifted(flight, longitude):
         c, d = np.cos(theta), np.sin(theta)
         flat = np.zeros(len(r))
         return np.array(
-            [r * c, r * d, flat, u * c - v * d, u * d + v * c, flat, radial * c - along * d, radial * d + along * c, flat]
+            [
+                r * c,
+                r * d,
+                flat,
+                u * c - v * d,
+                u * d + v * c,
+                flat,
+                radial * c - along * d,
+                radial * d + along * c,
+                flat,
+            ]
         )
 
     return path, float(theta[-1])

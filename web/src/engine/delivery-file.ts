@@ -1,4 +1,4 @@
-// Single file: the core's bytes and the worker's code are data blocks of the page itself.
+// Single file: the core's bytes (gzip, base64) and the worker's code are data blocks of the page itself.
 
 function block(id: string): string {
   return document.getElementById(id)?.textContent ?? "";
@@ -6,11 +6,12 @@ function block(id: string): string {
 
 let workerUrl: string | undefined;
 
-export function openModule(): Promise<WebAssembly.Module> {
+export async function openModule(): Promise<WebAssembly.Module> {
   const text = atob(block("core"));
-  const bytes = new Uint8Array(text.length);
-  for (let i = 0; i < text.length; i++) bytes[i] = text.charCodeAt(i);
-  return WebAssembly.compile(bytes);
+  const packed = new Uint8Array(text.length);
+  for (let i = 0; i < text.length; i++) packed[i] = text.charCodeAt(i);
+  const unpacked = new Blob([packed]).stream().pipeThrough(new DecompressionStream("gzip"));
+  return WebAssembly.compile(await new Response(unpacked).arrayBuffer());
 }
 
 export function startWorker(): Worker {

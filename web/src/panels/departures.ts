@@ -30,6 +30,8 @@ const WORDS: Record<Progress["is"], string> = { running: "working", stopped: "st
 
 export function mountDepartures({ state, client, studies }: Page): void {
   let run: StudyRun | undefined;
+  /** What was typed when the study began. */
+  let asked = "";
   let report: StudyReport | undefined;
   let marked: StudyRow | undefined;
   let opened: StudyRow | undefined;
@@ -41,12 +43,13 @@ export function mountDepartures({ state, client, studies }: Page): void {
     return h("fieldset", { class: "elements" }, h("legend", {}, legend), ...inside.map((control) => field(state, control, infos.get(control.key))));
   });
   const begin = (name: StudyName) => {
-    const link = state.verdict.get().link;
-    if (link === null) return;
-    const planned = client.attempt((core) => ({ name, ...core.study_items(name, link) }));
+    // The text as typed: a study needs no departure date, which the flight above may be waiting for.
+    const text = state.text();
+    const planned = client.attempt((core) => ({ name, ...core.study_items(name, text) }));
     if (planned.is === "refused") return refuse(planned.errors);
     if (planned.is !== "done") return;
     run?.stop();
+    asked = text;
     opened = marked = undefined;
     agreement.hidden = true;
     const plan = planned.value;
@@ -71,10 +74,11 @@ export function mountDepartures({ state, client, studies }: Page): void {
 
   const figure = new Figure(state, {
     name: "departures",
-    height: (width) => (isMap() ? Math.min(520, 120 + 20 * sails().length) : width < 500 ? 400 : 460),
+    height: (width) => (isMap() ? Math.min(520, Math.max(260, 120 + 20 * sails().length)) : width < 500 ? 400 : 460),
     stale: () => {
-      const link = state.verdict.get().link ?? "";
-      return baseOf(report?.link ?? "", isMap()) !== baseOf(link, isMap()) && (!opened || flightOf(link) !== flightOf(opened.link));
+      const link = state.verdict.get().link;
+      if (link !== null && opened && flightOf(link) === flightOf(opened.link)) return false;
+      return baseOf(state.text(), isMap()) !== baseOf(asked, isMap());
     },
     overlay: (context, panels) => {
       for (const row of [opened, marked])
@@ -100,13 +104,17 @@ export function mountDepartures({ state, client, studies }: Page): void {
   const nearest = (event: PointerEvent): StudyRow | undefined => {
     const bounds = figure.frame.getBoundingClientRect();
     const [left, top] = [event.clientX - bounds.left, event.clientY - bounds.top];
-    let [best, found]: [number, StudyRow | undefined] = [REACH_PX, undefined];
-    for (const panel of figure.panels)
+    let [best, found]: [number, StudyRow | undefined] = [Number.POSITIVE_INFINITY, undefined];
+    for (const panel of figure.panels) {
+      // A cell of the map is found all over.
+      const [columns, lines] = (report?.axes ?? []).map((axis) => axis.values.length);
+      best = Math.min(best, lines ? Math.hypot(panel.width / (columns ?? 1), panel.height / lines) / 2 : REACH_PX);
       for (const row of report?.rows ?? []) {
         const [x, y] = spot(row, panel);
         const distance = Math.hypot(x - left, y - top);
         if (distance < best) [best, found] = [distance, row];
       }
+    }
     return found;
   };
   const mark = (row: StudyRow | undefined) => {
@@ -195,7 +203,7 @@ export function mountDepartures({ state, client, studies }: Page): void {
   state.shown.watch(compare);
 
   const pair = h("div", { class: "study", hidden: true }, figure.frame, rows.element);
-  const asked = h("div", { class: "study-fields" }, ...fields);
+  const inputs = h("div", { class: "study-fields" }, ...fields);
   const buttons = h("div", { class: "tools" }, dates, map);
   const dateless = h(
     "p",
@@ -206,15 +214,14 @@ export function mountDepartures({ state, client, studies }: Page): void {
   state.scenario.watch(({ texts }) => {
     const spatial = texts.geometry === "spatial";
     dateless.hidden = spatial;
-    asked.hidden = buttons.hidden = !spatial;
+    inputs.hidden = buttons.hidden = !spatial;
     refused.replaceChildren();
   });
-  state.verdict.watch(({ link }) => (dates.disabled = map.disabled = link === null));
   part("departures").append(
     h("h2", { id: "departures-title" }, "Departures"),
     h("p", {}, "When should it leave?"),
     dateless,
-    asked,
+    inputs,
     buttons,
     refused,
     working,
