@@ -116,6 +116,7 @@ impl<const N: usize> Mul<f64> for Dual<N> {
     }
 }
 
+#[allow(clippy::suspicious_arithmetic_impl, reason = "one reciprocal serves the value and every derivative")]
 impl<const N: usize> Div<f64> for Dual<N> {
     type Output = Self;
     #[inline(always)]
