@@ -28,6 +28,8 @@ mod panels;
 #[path = "../tests/sample/mod.rs"]
 mod sample;
 mod shapes;
+#[cfg(test)]
+mod study_laws;
 mod svg;
 mod theme;
 mod told;

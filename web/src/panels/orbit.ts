@@ -47,7 +47,8 @@ export function mountOrbit({ state, client }: Page): void {
     overlay: (context, panels) => {
       const panel = panels[0];
       const histories = state.shown.get()?.histories;
-      if (panel && histories && histories.rows > 0) drawCraft(context, panel, histories, state.cursor_d.get());
+      const flies = (histories?.column("t_d").at(-1) ?? 0) > 0;
+      if (panel && histories && flies) drawCraft(context, panel, histories, state.cursor_d.get());
     },
   });
   const auPerPixel = () => {

@@ -197,6 +197,7 @@ fn report(spiral: Spiral) -> Report {
             sail_dv_km_s: None,
             lead_angle_deg: None,
             earth_range_max_au: None,
+            earth_view: None,
             final_eccentricity: None,
             estimate: None,
             proof: Proof {

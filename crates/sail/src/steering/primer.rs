@@ -62,7 +62,7 @@ mod tests {
 
     proptest! {
         #[test]
-        fn no_other_attitude_pushes_harder(phi in 0.0..std::f64::consts::PI, other in 0.0..1.5707f64) {
+        fn no_other_attitude_pushes_harder(phi in 0.0..std::f64::consts::PI, other in 0.0..std::f64::consts::FRAC_PI_2) {
             let gain = |cos: f64, sin: f64| {
                 let f = force::ideal(cos, sin);
                 f.radial * phi.cos() + f.transverse * phi.sin()
