@@ -84,8 +84,6 @@ fn what_the_readme_calls_refused_is_refused() {
         ("`temp_max_k`", "temp_max_k=500"),
         ("`ageing`", "ageing=0.1,1"),
         ("`control` below 1", "control=0.5"),
-        ("excess speeds above 0", "vinf_km_s=1"),
-        ("excess speeds above 0", "vinf_arrive_km_s=1"),
         ("`arrive=flyby`", "arrive=flyby"),
         ("`segments`", "segments=10"),
     ] {

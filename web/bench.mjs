@@ -1,4 +1,5 @@
-// Prints the page's own measurements: first answer after opening, solving in WASM, redrawing while dragging.
+// Prints the page's own measurements: first answer after opening, solving in WASM, redrawing while dragging, a map of
+// departure dates.
 import { readFileSync } from "node:fs";
 import { pathToFileURL } from "node:url";
 import { launch } from "../tests/page/browser/browsers.mjs";
@@ -13,11 +14,13 @@ const line = (what, values) =>
   );
 
 await solving();
+await solvingInSpace();
 for (const name of ["chromium", "firefox"]) {
   const browser = await launch(name);
   try {
     await opening(browser);
     await redrawing(browser);
+    await mapping(browser);
   } finally {
     await browser.close();
   }
@@ -38,6 +41,43 @@ async function solving() {
     return took_ms;
   });
   line(`WASM in Node, ${converged} of ${links.length} converged`, times);
+}
+
+/** Rendezvous with Mars at 1 mm/s^2: 24 dates over a synodic period, each cold, then one date after the other. */
+async function solvingInSpace() {
+  const core = await openCore();
+  const meet = "geometry=spatial&arrive=rendezvous&ac_mm_s2=1";
+  const dates = Array.from({ length: 24 }, (_, i) => new Date(Date.UTC(2030, 0, 1) + i * 32.5 * 86_400_000).toISOString().slice(0, 10));
+  for (const date of dates.slice(0, 4)) core.solve(`${meet}&depart=${date}`);
+  let converged = 0;
+  const cold = dates.map((date) => {
+    const start = performance.now();
+    if (core.solve(`${meet}&depart=${date}`).report.flight.status === "converged") converged++;
+    return performance.now() - start;
+  });
+  line(`WASM in Node, rendezvous whole, ${converged} of ${dates.length} converged`, cold);
+  const link = `${meet}&span=2030-01-01,2032-02-19&step_d=6`;
+  const items = core.study_items("dates", link).items.map((item) => {
+    const start = performance.now();
+    const points = core.study_evaluate("dates", link, item);
+    return (performance.now() - start) / points.length;
+  });
+  line("WASM in Node, rendezvous along a row of dates, per date", items);
+}
+
+/** 120 dates at 20 accelerations to Mars, on two workers, from the click to the first rows and to the last. */
+async function mapping(browser) {
+  const page = await browser.newPage({ before: () => Object.defineProperty(navigator, "hardwareConcurrency", { value: 2 }) });
+  const link = "geometry=spatial&arrive=rendezvous&ac_mm_s2=1&span=2030-01-01,2031-12-16&step_d=6&ac_range=0.5,3,20";
+  await page.open(`${pathToFileURL(path("dist/sunreach.html")).href}#${link}`);
+  const start = performance.now();
+  await page.evaluate(() => [...document.querySelectorAll("#departures button")].find((button) => button.textContent.startsWith("Map")).click());
+  await page.until(() => Number.parseInt(document.getElementById("departures-said").textContent, 10) > 0, undefined, 60_000);
+  const first_s = (performance.now() - start) / 1000;
+  await page.until(() => document.getElementById("departures-said").textContent.includes("finished"), undefined, 600_000);
+  const all_s = (performance.now() - start) / 1000;
+  process.stdout.write(`${browser.name}, map on 2 workers: first rows ${first_s.toFixed(2)} s, all ${all_s.toFixed(1)} s; ${await page.text("#departures-said")}\n`);
+  await page.close();
 }
 
 /** From the start of navigation to the frame after the one in which the answer stands. */
