@@ -37,6 +37,7 @@ export class Figure {
   private readonly words = h("p", { class: "unseen" });
   private readonly failed = h("p", { class: "alarm", hidden: true }, "This figure could not be drawn.");
   private picture: Picture | undefined;
+  private drawnStale = false;
 
   constructor(
     private readonly state: State,
@@ -46,7 +47,7 @@ export class Figure {
     this.base.setAttribute("aria-labelledby", this.words.id);
     this.frame.append(this.base, this.layer, this.words, this.failed);
     state.theme.watch(this.redraw);
-    state.verdict.watch(this.redraw);
+    state.verdict.watch(() => parts.stale() !== this.drawnStale && this.redraw());
     state.cursor_d.watch(() => (parts.view?.().cursor_t_d === undefined ? this.redrawOverlay() : this.redraw()));
     new ResizeObserver(this.redraw).observe(this.frame);
     addEventListener("resize", this.redraw);
@@ -73,7 +74,8 @@ export class Figure {
     }
     // Lines sit on whole device pixels: at least two a CSS pixel keep them smooth.
     const scale = Math.max(2, devicePixelRatio);
-    const options = { width, height, scale, theme: this.state.theme.get(), stale: this.parts.stale(), ...this.parts.view?.() };
+    this.drawnStale = this.parts.stale();
+    const options = { width, height, scale, theme: this.state.theme.get(), stale: this.drawnStale, ...this.parts.view?.() };
     const panels = this.picture.draw(this.base, options);
     this.failed.hidden = panels !== undefined;
     this.panels = panels ?? [];

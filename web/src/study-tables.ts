@@ -94,7 +94,7 @@ export class Picks {
       h("h3", {}, "Best departures, and what slipping costs"),
       table(
         "Best departures",
-        ["departure: open", "why", "flight, d", "arrival", "same day until", ...slips.map((days) => `arrives later by, d, if ${days} d late`)],
+        ["departure: open", "why", "flight, d", "arrival", "same day until", ...slips.map((days) => `${days} d late: arrives later, d`)],
         report.best.map((pick) => {
           const row = rowOf(pick);
           const why = `${pick.kind === "shortest" ? "shorter than its neighbours" : "earliest arrival"}${pick.at_edge ? ", at the edge of the span" : ""}`;
@@ -109,7 +109,7 @@ export class Picks {
             ...slips.map((days) => h("td", {}, fixed(later(pick, days), 1))),
           );
         }),
-        "departures",
+        "departures picks",
       ),
     );
   }

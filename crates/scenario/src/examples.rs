@@ -36,6 +36,23 @@ pub const EXAMPLES: &[Example] = &[
         about: "An invented craft of 0.06 mm/s\u{b2}: it gets there, after many years and revolutions.",
     },
     Example {
+        name: "Meet Mars",
+        link: "v=1&title=Meet+Mars&geometry=spatial&depart=2031-02-01&arrive=rendezvous",
+        about: "The default craft leaves on a date and meets the planet itself.",
+    },
+    Example {
+        name: "Small body",
+        link: "v=1&title=Small+body&area_m2=10000&mass_kg=90&to=orbit&to_orbit=1.3,0.22,10.8,304,178,60\
+               &geometry=spatial&depart=2032-03-01&arrive=rendezvous",
+        about: "An invented small body on an inclined ellipse near the Earth.",
+    },
+    Example {
+        name: "Tilted inner orbit",
+        link: "v=1&title=Tilted+inner+orbit&area_m2=10000&mass_kg=90&to=orbit&to_orbit=0.6,0.1,15,40\
+               &geometry=spatial",
+        about: "An invented orbit to watch the Sun from out of the ecliptic; both ends free.",
+    },
+    Example {
         name: "Spiral without foresight",
         link: "v=1&title=Spiral+without+foresight&area_m2=3000&mass_kg=60&steer=local",
         about: "The same trip steered from moment to moment: see the eccentricity it ends with.",

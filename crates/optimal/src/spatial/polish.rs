@@ -242,12 +242,17 @@ pub enum Kind {
 ///
 /// `None` when it leaves the flight it started from: a polish must not wander to another branch.
 pub fn polish(kind: Kind, conditions: &Conditions<'_>, flight: Flight, tolerance: f64) -> Option<Flight> {
+    let found = sought(kind, conditions, flight, tolerance)?;
+    let near = (found.time / flight.time - 1.0).abs() < 0.05 && found.costate.dot(&flight.costate) > 0.95;
+    near.then_some(found)
+}
+
+/// Newton from `start` to whatever flight it leads to; `None` when it leads to none.
+pub fn sought(kind: Kind, conditions: &Conditions<'_>, start: Flight, tolerance: f64) -> Option<Flight> {
     const ROUGH: (f64, f64) = (1e-9, 1e-6);
-    let rough = solved(kind, conditions, flight, ROUGH, 20)?;
+    let rough = solved(kind, conditions, start, ROUGH, 20)?;
     let fine = solved(kind, conditions, rough.point, (tolerance, RESIDUAL), 6)?;
-    let near =
-        (fine.point.time / flight.time - 1.0).abs() < 0.05 && fine.point.costate.dot(&flight.costate) > 0.95;
-    (fine.converged && near).then_some(fine.point)
+    fine.converged.then_some(fine.point)
 }
 
 fn solved(
