@@ -72,6 +72,8 @@ export function mountDepartures({ state, client, studies }: Page): void {
   const rows = new RowTable((row) => open(row));
   const picks = new Picks((row) => open(row));
 
+  const isMap = () => report?.study === "map";
+  const sails = () => (report?.axes[1]?.values ?? []) as number[];
   const figure = new Figure(state, {
     name: "departures",
     height: (width) => (isMap() ? Math.min(520, Math.max(260, 120 + 20 * sails().length)) : width < 500 ? 400 : 460),
@@ -93,8 +95,6 @@ export function mountDepartures({ state, client, studies }: Page): void {
         }
     },
   });
-  const isMap = () => report?.study === "map";
-  const sails = () => (report?.axes[1]?.values ?? []) as number[];
   const spot = (row: StudyRow, panel: FigurePanel): [number, number] => {
     const day = dayOf(row.depart) - dayOf(String(report?.axes[0]?.values[0] ?? ""));
     if (panel.column === "time_d") return place(panel, day, row.time_d ?? Number.NaN);
