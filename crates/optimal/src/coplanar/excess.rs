@@ -137,9 +137,7 @@ impl Equations<3> for Shooting {
     }
 
     fn moved(&self, point: &Unknowns, step: &SVector<f64, 3>) -> Unknowns {
-        let [first, second] = tangents(&point.costate);
-        let costate = (point.costate + first * step[0] + second * step[1]).normalize();
-        Unknowns { costate, time: point.time + step[2] }
+        point.stepped(step)
     }
 
     fn trusted_fraction(&self, point: &Unknowns, step: &SVector<f64, 3>) -> f64 {

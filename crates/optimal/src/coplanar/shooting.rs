@@ -20,6 +20,13 @@ pub struct Unknowns {
 }
 
 impl Unknowns {
+    /// Moved by a step of two components in the tangent plane of the costate's sphere and one of time.
+    pub(super) fn stepped(&self, step: &SVector<f64, 3>) -> Unknowns {
+        let [first, second] = tangents(&self.costate);
+        let costate = (self.costate + first * step[0] + second * step[1]).normalize();
+        Unknowns { costate, time: self.time + step[2] }
+    }
+
     /// Straight-line prediction on the sphere and in the logarithm of time.
     pub fn extrapolated(before: &Unknowns, now: &Unknowns, ratio: f64) -> Unknowns {
         let costate = (now.costate + (now.costate - before.costate) * ratio).normalize();
@@ -92,9 +99,7 @@ impl Equations<3> for Shooting {
     }
 
     fn moved(&self, point: &Unknowns, step: &SVector<f64, 3>) -> Unknowns {
-        let [first, second] = tangents(&point.costate);
-        let costate = (point.costate + first * step[0] + second * step[1]).normalize();
-        Unknowns { costate, time: point.time + step[2] }
+        point.stepped(step)
     }
 
     fn trusted_fraction(&self, point: &Unknowns, step: &SVector<f64, 3>) -> f64 {
